@@ -1,0 +1,1 @@
+"""Named properties as data rows: law, symbol, unit, conventions, cautions, source."""

@@ -1,0 +1,1 @@
+"""From a structure file to lattice, sites, symmetry and axes."""

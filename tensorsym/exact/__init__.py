@@ -1,0 +1,1 @@
+"""Exact linear algebra over the rationals: no files, no floats."""

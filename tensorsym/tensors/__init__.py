@@ -1,0 +1,1 @@
+"""Kinds of tensors, the laws that define them, changes of axes and matrix notation."""
