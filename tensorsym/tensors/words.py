@@ -40,15 +40,15 @@ class Components:
     """Number of words that each component fills."""
 
 
-def indices_of(word: int, rank: int) -> tuple[int, ...]:
-    """Return the indices 0, 1, 2 of a word.
+def indices_of(word: int, rank: int, base: int = 3) -> tuple[int, ...]:
+    """Return the indices 0, 1, 2 of a word (0 and 1 of a word with base 2).
 
     >>> indices_of(5, 3)
     (0, 1, 2)
     """
     indices = [0] * rank
     for place in range(rank - 1, -1, -1):
-        word, indices[place] = divmod(word, 3)
+        word, indices[place] = divmod(word, base)
     return tuple(indices)
 
 
