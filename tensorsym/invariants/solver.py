@@ -173,6 +173,11 @@ def eliminated_blocks(vectors: Sequence[Vector]) -> tuple[Block, ...]:
     blocks = []
     for members in _connected(vectors):
         numbers = sorted({number for member in members for number in vectors[member]})
+        if len(members) == 1:
+            lead = vectors[members[0]][numbers[0]]
+            row = tuple(vectors[members[0]][number] * (1 if lead > 0 else -1) for number in numbers)
+            blocks.append(Block(tuple(numbers), (numbers[0],), (row,), abs(lead)))
+            continue
         matrix = [[vectors[member].get(number, 0) for number in numbers] for member in members]
         reduced = reduced_rows(matrix)
         free = tuple(numbers[pivot] for pivot in reduced.pivots)

@@ -43,15 +43,15 @@ class Block:
     """Numbers of the components, in the order of preference."""
     free: tuple[int, ...]
     """Numbers of the components chosen as independent."""
-    rows: tuple[tuple[int, ...], ...]
-    """Numerators, one row for each free component."""
+    rows: tuple[tuple[int, ...], ...] | tuple[tuple[float, ...], ...]
+    """Numerators, one row for each free component: whole numbers, or floating ones in general axes."""
     denominator: int = 1
     """Common denominator."""
 
 
 @dataclass(frozen=True, eq=False)
 class InvariantSpace:
-    """All tensors of a kind that a point group allows, in the Cartesian axes of the group's standard frame.
+    """All tensors of a kind that a point group allows, in the standard frame or in axes turned from it.
 
     Components are numbered as in `tensorsym.tensors.words.components_of`.
     """
@@ -64,6 +64,8 @@ class InvariantSpace:
     """The allowed components; what stands in no block vanishes."""
     certificate: Certificate
     """The dimension by two roads."""
+    turn: tuple[tuple[float, ...], ...] | None = None
+    """Rows are the unit vectors of the axes in the standard frame; None for the standard frame itself."""
 
     def __repr__(self) -> str:
         """Return one line with the dimension and the independent components."""
@@ -88,19 +90,20 @@ class InvariantSpace:
         return tuple(sorted(number for block in self.blocks for number in block.free))
 
     @cached_property
-    def expressions(self) -> dict[int, tuple[tuple[int, Fraction], ...]]:
-        """Every allowed component as ``((independent component, coefficient), ...)``, exact."""
-        found: dict[int, tuple[tuple[int, Fraction], ...]] = {}
-        for block in self.blocks:
-            for place, number in enumerate(block.components):
-                terms = tuple(
-                    (free, Fraction(row[place], block.denominator))
-                    for free, row in zip(block.free, block.rows, strict=True)
-                    if row[place]
-                )
-                if terms:
-                    found[number] = terms
-        return found
+    def expressions(self) -> dict[int, tuple[tuple[int, Fraction | float], ...]]:
+        """Every allowed component as ``((independent component, coefficient), ...)``.
+
+        Coefficients are Fractions, or floats in general axes.
+        """
+        return {
+            number: tuple(
+                (free, _coefficient(row[place], block.denominator))
+                for free, row in zip(block.free, block.rows, strict=True)
+                if row[place]
+            )
+            for block in self.blocks
+            for place, number in enumerate(block.components)
+        }
 
     @cached_property
     def zero(self) -> tuple[int, ...]:
@@ -128,6 +131,10 @@ class InvariantSpace:
     def indices(self, number: int) -> tuple[int, ...]:
         """Return the indices 0, 1, 2 of a component."""
         return indices_of(self.components.words[number], self.kind.rank)
+
+
+def _coefficient(numerator: float, denominator: int) -> Fraction | float:
+    return Fraction(numerator, denominator) if isinstance(numerator, int) else numerator / denominator
 
 
 def spread_components(kind: TensorKind) -> NDArray[np.float64]:
