@@ -96,6 +96,15 @@ class Operation:
         vectors = np.array([[1.0, -0.5, 0.0], [0.0, np.sqrt(0.75), 0.0], [0.0, 0.0, 1.0]])
         return np.asarray(vectors @ matrix @ np.linalg.inv(vectors))
 
+    def cartesian_direction(self) -> tuple[float, float, float] | None:
+        """Return the unit vector along `direction` in the standard frame."""
+        if self.direction is None:
+            return None
+        u, v, w = self.direction
+        vector = (u - v / 2, v * 0.75**0.5, w) if self.basis is Basis.HEXAGONAL else (u, v, w)
+        length = sum(component * component for component in vector) ** 0.5
+        return vector[0] / length, vector[1] / length, vector[2] / length
+
     def _turns_backwards(self) -> bool:
         """Tell a turn by more than 180 degrees, seen against its axis, from its inverse."""
         axis = self.direction

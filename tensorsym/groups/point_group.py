@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from functools import lru_cache
 
 from tensorsym.groups.classes import CLASSES, ClassRow
-from tensorsym.groups.operations import IDENTITY, Basis, Direction, Matrix, Operation, direction_in_words
+from tensorsym.groups.operations import IDENTITY, Basis, Direction, Matrix, Operation
 
 _DIRECTIONS: dict[Basis, dict[str, Direction]] = {
     Basis.CARTESIAN: {
@@ -68,17 +68,12 @@ class PointGroup:
         """True when the inversion is in the group."""
         return any(operation.symbol == "-1" for operation in self.operations)
 
-    @property
-    def elements_in_words(self) -> str:
-        """Where the elements lie, such as ``3 along z, 2 along x``."""
-        return ", ".join(_element_in_words(element) for element in self.elements) or "no element"
-
 
 def point_group_in_setting(setting: str) -> PointGroup:
     """Return the point group of a setting.
 
-    >>> point_group_in_setting("3m1").elements_in_words
-    '3 along z, m perpendicular to x'
+    >>> point_group_in_setting("3m1").elements[1].words
+    'mirror perpendicular to x'
     """
     return _groups()[setting]
 
@@ -147,10 +142,3 @@ def _closure(basis: Basis, generators: tuple[Operation, ...]) -> tuple[Operation
                 found[image] = None
                 waiting.append(image)
     return tuple(found)
-
-
-def _element_in_words(element: Operation) -> str:
-    if element.symbol == "-1":
-        return "centre of inversion"
-    where = direction_in_words(element.direction, element.basis)
-    return f"m perpendicular to {where}" if element.symbol == "m" else f"{element.symbol} along {where}"

@@ -53,6 +53,20 @@ def matrix_shape(kind: TensorKind) -> tuple[int, ...]:
     return tuple(6 if place in kind.pairs else 3 for place in range(kind.rank) if place - 1 not in kind.pairs)
 
 
+def indices_of_entry(kind: TensorKind, position: Sequence[int]) -> tuple[int, ...]:
+    """Return the tensor indices 0, 1, 2 of a matrix entry in the handbook's order, its position counted from 0.
+
+    >>> from tensorsym.tensors.law import parse_law
+    >>> indices_of_entry(parse_law("P_i = d_ijk sigma_jk").kind, (0, 3))
+    (0, 1, 2)
+    """
+    pairs = pair_order(VOIGT_ORDER)
+    indices: list[int] = []
+    for entry in position:
+        indices.extend(pairs[entry] if len(indices) in kind.pairs else (entry,))
+    return tuple(indices)
+
+
 def to_matrix(
     values: NDArray[np.float64], kind: TensorKind, factors: Sequence[float], order: str = VOIGT_ORDER
 ) -> NDArray[np.float64]:
