@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
@@ -108,6 +107,8 @@ def nearest_names(name: str, known: Iterable[str], count: int = 4) -> tuple[str,
     >>> nearest_names("piezolectric", ["piezoelectric", "pyroelectric", "elastic-stiffness"], 1)
     ('piezoelectric',)
     """
+    import difflib
+
     candidates = list(known)
     folded = {candidate.casefold(): candidate for candidate in candidates}
     close = difflib.get_close_matches(name.casefold(), folded, n=count, cutoff=0.5)

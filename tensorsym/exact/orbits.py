@@ -1,7 +1,8 @@
 """Orbits of words under moves that carry phases: the whole of invariant theory for monomial groups.
 
-A move sends word ``w`` to ``images[w]`` and multiplies by ``exp(2 pi i phases[w] / modulus)``. A function that all moves
-leave alone is fixed by its value at one word of an orbit, and exists when no closed walk in the orbit gathers a phase.
+A move sends word ``w`` to ``images[w]`` and multiplies by ``exp(2 pi i phases[w] / modulus)``. A function that
+all moves leave alone is fixed by its value at one word of an orbit, and exists when no closed walk in the orbit
+gathers a phase.
 """
 
 from __future__ import annotations
@@ -68,9 +69,7 @@ def phased_orbits(size: int, moves: Sequence[Move], modulus: int) -> PhasedOrbit
     return PhasedOrbits(orbit, tuple(phase), tuple(first[which] for which in range(len(number))))
 
 
-def _spread(
-    start: int, name: int, moves: Sequence[Move], modulus: int, label: list[int], phase: list[int]
-) -> bool:
+def _spread(start: int, name: int, moves: Sequence[Move], modulus: int, label: list[int], phase: list[int]) -> bool:
     """Label everything reachable from `start`; return False when a closed walk gathers a phase."""
     label[start] = name
     consistent = True

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
-from math import isqrt
+from math import isqrt, sqrt
 
 LARGEST_DENOMINATOR = 1024
 """Squares of coefficients are compared with fractions up to this denominator."""
@@ -24,7 +24,7 @@ class Surd:
 
     def __float__(self) -> float:
         """Return the floating value."""
-        return float(self.rational) * self.radicand**0.5
+        return float(self.rational) * sqrt(self.radicand)
 
 
 def surd_near(value: float | Fraction) -> Surd | None:

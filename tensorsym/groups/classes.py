@@ -1,11 +1,11 @@
 """The 32 crystal classes in the settings in use: the facts, one row each.
 
-Source: International Tables for Crystallography, vol. A (2016), tables 2.1.3.1 (order of symmetry directions), 3.2.1.4
-(symbols of the classes in Hermann-Mauguin and Schoenflies notation) and 2.1.3.3 (settings); the ranges of space-group
-numbers from its table 3.2.3.2. Typed from memory, checked by orders, by the counts of operations and against spglib.
+Source: International Tables for Crystallography, vol. A (2016), tables 2.1.3.1 (order of symmetry directions),
+3.2.1.4 (symbols of the classes in both notations) and 2.1.3.3 (settings); the ranges of space-group numbers from
+its table 3.2.3.2. Typed from memory, checked by orders, by the counts of operations and against spglib.
 
-Elements are written ``symbol:direction``. Those before ``|`` generate the group, those behind it stand in the symbol too.
-Directions: x y z, xy = [110], yx = [1-10] and xyz = [111] of the standard frame.
+Elements are written ``symbol:direction``. Those before ``|`` generate the group, those behind it stand in the symbol
+too. Directions: x y z, xy = [110], yx = [1-10] and xyz = [111] of the standard frame.
 """
 
 from __future__ import annotations

@@ -140,7 +140,9 @@ def symbol_of(matrix: Matrix) -> str:
 def axis_of(matrix: Matrix) -> Direction | None:
     """Return the lattice direction that the operation keeps or inverts; None for 1 and -1."""
     sign = determinant(matrix)
-    rows = [tuple(sign * entry - (row == column) for column, entry in enumerate(line)) for row, line in enumerate(matrix)]
+    rows = [
+        tuple(sign * entry - (row == column) for column, entry in enumerate(line)) for row, line in enumerate(matrix)
+    ]
     for first, second in ((0, 1), (0, 2), (1, 2)):
         (a, b, c), (d, e, f) = rows[first], rows[second]
         cross = (b * f - c * e, c * d - a * f, a * e - b * d)

@@ -37,8 +37,9 @@ def element_in_words(element: Operation, turn: Rows | None = None) -> str:
     if direction is None:
         return "the centre of inversion" if element.symbol == "-1" else "no element"
     if turn is not None:
-        direction = tuple(sum(row[k] * direction[k] for k in range(3)) for row in turn)
-    where = direction_in_axes(direction)
+        where = direction_in_axes([sum(row[k] * direction[k] for k in range(3)) for row in turn])
+    else:
+        where = direction_in_axes(direction)
     return f"m perpendicular to {where}" if element.symbol == "m" else f"{element.symbol} along {where}"
 
 
@@ -67,6 +68,6 @@ def direction_in_axes(direction: Sequence[float]) -> str:
             whole = tuple(round(value) for value in scaled)
             if max(map(abs, whole)) > _LARGEST_INDEX:
                 break
-            axes = {(1, 0, 0): "x", (0, 1, 0): "y", (0, 0, 1): "z"}
-            return axes.get(whole, "(" + ",".join(map(str, whole)) + ")")
+            axes = {"1,0,0": "x", "0,1,0": "y", "0,0,1": "z"}
+            return axes.get(",".join(map(str, whole)), "(" + ",".join(map(str, whole)) + ")")
     return "(" + ", ".join(f"{sense * component:.4f}" for component in direction) + ")"

@@ -73,9 +73,9 @@ def point_group_of_space_group(number: int) -> PointGroup:
 
 
 def _plain(symbol: str) -> str:
-    """Return the symbol in lower case with a leading minus for every bar, without blanks.
+    r"""Return the symbol in lower case with a leading minus for every bar, without blanks.
 
-    >>> _plain("3\N{COMBINING OVERLINE}m"), _plain(r"\\bar{3} 2/m")
+    >>> _plain("3\u0305m"), _plain(r"\bar{3} 2/m")
     ('-3m', '-32/m')
     """
     text = re.sub(r"(\d)[\u0304\u0305]", r"-\1", symbol)

@@ -24,7 +24,7 @@ def invariant_count(group: PointGroup, kind: TensorKind) -> int:
     >>> invariant_count(point_group_named("32"), parse_law("P_i = d_ijk sigma_jk").kind)
     2
     """
-    total = sum(times * _character(sample, kind) for sample, times in _classes(group.basis, group.operations))
+    total = sum((times * _character(sample, kind) for sample, times in _classes(group.operations)), Fraction(0))
     average = total / group.order
     assert average.denominator == 1, "an average of characters is a whole number"  # noqa: S101  a broken group, not input
     return int(average)
@@ -81,7 +81,7 @@ def _cycles(permutation: tuple[int, ...]) -> tuple[int, ...]:
 
 
 @lru_cache(maxsize=256)
-def _classes(_: object, operations: tuple[Operation, ...]) -> tuple[tuple[_Sample, int], ...]:
+def _classes(operations: tuple[Operation, ...]) -> tuple[tuple[_Sample, int], ...]:
     return tuple(Counter(_sample(operation) for operation in operations).items())
 
 

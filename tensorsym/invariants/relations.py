@@ -26,8 +26,8 @@ def matrix_factor(kind: TensorKind, factors: Sequence[int], word: int) -> int:
     >>> from tensorsym.tensors.law import parse_law
     >>> law = parse_law("epsilon_ij = s_ijkl sigma_kl")
     >>> from tensorsym.tensors.words import word_of
-    >>> matrix_factor(law.kind, law.factors, word_of((0, 0, 1, 2))), matrix_factor(law.kind, law.factors, word_of((0, 1, 0, 1)))
-    (2, 4)
+    >>> [matrix_factor(law.kind, law.factors, word_of(indices)) for indices in ((0, 0, 1, 2), (0, 1, 0, 1))]
+    [2, 4]
     """
     indices = indices_of(word, kind.rank)
     product = 1

@@ -22,7 +22,7 @@ from tensorsym.invariants.space import Block, Certificate, InvariantSpace
 from tensorsym.tensors.words import components_of, indices_of
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Sequence
+    from collections.abc import Sequence
 
     from tensorsym.exact.orbits import PhasedOrbits
     from tensorsym.groups.point_group import PointGroup
@@ -91,7 +91,7 @@ def _orbits(group: PointGroup, kind: TensorKind) -> PhasedOrbits:
 
 
 def _plane_blocks(group: PointGroup, kind: TensorKind, plane: int) -> list[Block]:
-    """Solve for words of `plane` letters x, y, and copy the answer to every choice of places for the other letters, z."""
+    """Solve for words of `plane` letters x, y, and copy the answer to every choice of places for the z between."""
     moves = [plane_move(generator, kind, plane) for generator in group.generators]
     orbits = phased_orbits(2**plane, moves, MODULUS[group.basis])
     heads = list(product((0, 1), repeat=plane))
@@ -118,9 +118,9 @@ def _copies(block: Block, heads: Sequence[Sequence[int]], kind: TensorKind) -> l
 def _real_vectors(orbits: PhasedOrbits, spelled: Sequence[Sequence[int]], base: int) -> list[Vector]:
     """Return real and imaginary parts of the orbits of letter words, as integer Cartesian components.
 
-    The letter word with minus at the places M holds the component with y at the places Y with the factor ``i**|Y|`` times
-    -1 for every place in both. So a component with an even number of y belongs to the real part, one with an odd number
-    to the imaginary part. `spelled` holds the indices of each component; words have `base` letters.
+    The letter word with minus at the places M holds the component with y at the places Y with the factor ``i**|Y|``
+    times -1 for every place in both. So a component with an even number of y belongs to the real part, one with an
+    odd number to the imaginary part. `spelled` holds the indices of each component; words have `base` letters.
     """
     survivors = _survivors(orbits, len(spelled[0]), base)
     vectors: dict[tuple[int, int], Vector] = {}
@@ -210,9 +210,7 @@ def _connected(vectors: Sequence[Vector]) -> list[list[int]]:
 
 def _without_trace(blocks: tuple[Block, ...], kind: TensorKind) -> tuple[Block, ...]:
     """Keep the combinations whose trace ``T_11 + T_22 + T_33`` vanishes."""
-    vectors: list[Vector] = [
-        dict(zip(block.components, row, strict=True)) for block in blocks for row in block.rows
-    ]
+    vectors = [dict(zip(block.components, map(int, row), strict=True)) for block in blocks for row in block.rows]
     diagonal = [number for number, word in enumerate(components_of(kind).words) if word in (0, 4, 8)]
     traces = [sum(vector.get(number, 0) for number in diagonal) for vector in vectors]
     kept = []

@@ -12,9 +12,14 @@ from tensorsym.groups.placement import element_in_words, elements_in_words
 from tensorsym.groups.point_group import PointGroup
 from tensorsym.groups.symbols import point_group_named
 from tensorsym.invariants.axes import space_in_axes
-from tensorsym.invariants.relations import Combination, combination_text, component_names, matrix_factor, matrix_relations
+from tensorsym.invariants.relations import (
+    Combination,
+    combination_text,
+    component_names,
+    matrix_factor,
+    matrix_relations,
+)
 from tensorsym.invariants.solver import invariant_space
-from tensorsym.tensors.axes import Axes
 from tensorsym.tensors.law import Law, parse_law
 from tensorsym.tensors.notation import indices_of_entry
 from tensorsym.tensors.words import word_of
@@ -27,6 +32,7 @@ if TYPE_CHECKING:
 
     from tensorsym.crystal.crystal import Crystal
     from tensorsym.invariants.space import Certificate, InvariantSpace
+    from tensorsym.tensors.axes import Axes
     from tensorsym.tensors.kind import TensorKind
 
 MOST_EXPLAINED = 2000
@@ -51,7 +57,7 @@ class AllowedForm:
     """The axes of the components, seen from the file; None for the standard frame of a named group."""
     space: InvariantSpace
     """The allowed tensors in those axes."""
-    property: Property | None = None
+    row: Property | None = None
     """The catalogue's row, None for a law of the user's own."""
     crystal: Crystal | None = None
     """The crystal, None for a named group."""
@@ -60,7 +66,7 @@ class AllowedForm:
 
     def __repr__(self) -> str:
         """Return one line: what, for which class, how many components."""
-        what = self.property.name if self.property else self.law.text
+        what = self.row.name if self.row else self.law.text
         return f"AllowedForm({what}, {self.group.hermann_mauguin}: {' '.join(self.independent_components[:10])})"
 
     @property

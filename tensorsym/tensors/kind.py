@@ -103,6 +103,4 @@ def _pairs(rank: int, generators: tuple[SignedPermutation, ...]) -> tuple[int, .
             if (tuple(swap), 1) in group:
                 partners[low].append(high)
                 partners[high].append(low)
-    return tuple(
-        low for low, high in pairwise(range(rank)) if partners[low] == [high] and partners[high] == [low]
-    )
+    return tuple(low for low, high in pairwise(range(rank)) if partners[low] == [high] and partners[high] == [low])

@@ -56,9 +56,7 @@ class Law:
     digits (4, 5, 6) times the tensor component."""
 
 
-def parse_law(
-    text: str, equations: Sequence[str] = (), regime: str | None = None, *, traceless: bool = False
-) -> Law:
+def parse_law(text: str, equations: Sequence[str] = (), regime: str | None = None, *, traceless: bool = False) -> Law:
     """Return the law that the text states.
 
     Parameters
@@ -98,7 +96,9 @@ def parse_law(
     left = _quantity(left_term, text)
     sources = tuple(_quantity(term, text) for term in source_terms)
     _check_indices(text, left_term, coefficient, source_terms)
-    places = [tuple(coefficient.indices.index(letter) for letter in term.indices) for term in (left_term, *source_terms)]
+    places = [
+        tuple(coefficient.indices.index(letter) for letter in term.indices) for term in (left_term, *source_terms)
+    ]
     quantities = (left, *sources)
     symmetries = [
         *_symmetric_pairs(quantities, places, len(coefficient.indices)),
@@ -196,9 +196,7 @@ def _symmetric_pairs(
     ]
 
 
-def _equal_factors(
-    terms: Sequence[Term], places: Sequence[tuple[int, ...]], rank: int
-) -> list[SignedPermutation]:
+def _equal_factors(terms: Sequence[Term], places: Sequence[tuple[int, ...]], rank: int) -> list[SignedPermutation]:
     """Return the exchanges of factors that are the same quantity, such as ``E_j E_k``."""
     last: dict[str, tuple[int, ...]] = {}
     found: list[SignedPermutation] = []

@@ -10,7 +10,6 @@ from tensorsym.groups.operations import Basis
 from tensorsym.tensors.words import components_of, indices_of
 
 if TYPE_CHECKING:
-    import numpy as np
     from numpy.typing import NDArray
 
     from tensorsym.groups.operations import Operation
@@ -58,8 +57,11 @@ def projector(operations: tuple[Operation, ...], kind: TensorKind) -> NDArray[An
 
     This is the projector onto the identity irrep; its trace is the number of independent components.
     """
-    total = sum(representation_matrix(operation, kind) for operation in operations)
-    return total / (Fraction(len(operations)) if total.dtype == object else len(operations))
+    import numpy as np
+
+    matrices = np.stack([representation_matrix(operation, kind) for operation in operations])
+    order: Any = Fraction(len(operations)) if matrices.dtype == object else len(operations)
+    return np.asarray(matrices.sum(axis=0) / order)
 
 
 def _image_words(indices: tuple[int, ...], matrix: Any) -> list[tuple[int, Any]]:

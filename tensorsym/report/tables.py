@@ -1,0 +1,82 @@
+"""Plain text tables and paragraphs that fit a terminal of 80 columns."""
+
+from __future__ import annotations
+
+import textwrap
+from itertools import product
+from typing import TYPE_CHECKING
+
+from tensorsym.tensors.notation import VOIGT_ORDER
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Iterable, Sequence
+
+    from tensorsym.tensors.kind import TensorKind
+
+WIDTH = 80
+"""Columns of a screen."""
+
+LARGEST_GRID = 6**3
+"""A matrix with more entries than this is told by its components alone."""
+
+
+def paragraph(head: str, words: Iterable[str], separator: str = ", ") -> str:
+    """Return a wrapped paragraph: a head, then words, following lines indented.
+
+    >>> paragraph("zero:", ["d11", "d12"])
+    'zero: d11, d12'
+    """
+    return textwrap.fill(
+        f"{head} {separator.join(words)}",
+        WIDTH,
+        subsequent_indent="    ",
+        break_long_words=False,
+        break_on_hyphens=False,
+    )
+
+
+def matrix_grids(kind: TensorKind, shape: Sequence[int], entry: Callable[[tuple[int, ...]], str]) -> list[str]:
+    """Return the matrix of a kind as text, one grid for each value of the leading indices beyond two.
+
+    Parameters
+    ----------
+    kind : TensorKind
+        Says which indices are pairs, for the labels.
+    shape : sequence of int
+        Shape in matrix notation.
+    entry : callable
+        Gives the text of an entry from its position.
+    """
+    if not shape:
+        return [f"    {entry(())}"]
+    labels = axis_labels(kind)
+    grids = []
+    for lead in product(*(range(size) for size in shape[:-2])):
+        title = "  ".join(f"{labels[axis][index]}" for axis, index in enumerate(lead))
+        rows = shape[-2] if len(shape) > 1 else 1
+        cells = [
+            [entry((*lead, *((row,) if len(shape) > 1 else ()), column)) for column in range(shape[-1])]
+            for row in range(rows)
+        ]
+        side = labels[len(shape) - 2] if len(shape) > 1 else ("",)
+        grids.append(_grid(cells, side, labels[len(shape) - 1], f"first {title}" if lead else ""))
+    return grids
+
+
+def axis_labels(kind: TensorKind) -> list[tuple[str, ...]]:
+    """Return the labels along every axis of the matrix: pairs in the handbook's order, or 1 2 3."""
+    pairs = tuple(VOIGT_ORDER.split())
+    return [
+        pairs if place in kind.pairs else ("1", "2", "3") for place in range(kind.rank) if place - 1 not in kind.pairs
+    ]
+
+
+def _grid(cells: list[list[str]], side: Sequence[str], top: Sequence[str], title: str) -> str:
+    width = max(6, *(len(cell) for row in cells for cell in row)) + 2
+    edge = max(len(label) for label in side) + 4
+    lines = [f"    {title}"] if title else []
+    lines.append(" " * edge + "".join(label.rjust(width) for label in top))
+    lines += [
+        label.rjust(edge) + "".join(cell.rjust(width) for cell in row) for label, row in zip(side, cells, strict=True)
+    ]
+    return "\n".join(line.rstrip() for line in lines)
