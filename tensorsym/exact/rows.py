@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from math import gcd
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
@@ -26,18 +27,20 @@ def reduced_rows(matrix: Sequence[Sequence[int]]) -> ReducedRows:
 
     Examples
     --------
-    >>> reduced_rows([[2, 4, 0], [1, 2, 3]])
-    ReducedRows(pivots=(0, 2), rows=((3, 6, 0), (0, 0, 3)), denominator=3)
+    >>> reduced_rows([[2, 3, 0], [2, 3, 4]])
+    ReducedRows(pivots=(0, 2), rows=((2, 3, 0), (0, 0, 2)), denominator=2)
     """
     from flint import fmpz_mat
 
     if not matrix or not matrix[0]:
         return ReducedRows((), (), 1)
     form, denominator, rank = fmpz_mat([list(row) for row in matrix]).rref()
-    sign = -1 if int(denominator) < 0 else 1
-    rows = tuple(tuple(sign * int(entry) for entry in row) for row in form.tolist()[:rank])
+    whole = [[int(entry) for entry in row] for row in form.tolist()[:rank]]
+    divisor = gcd(int(denominator), *(entry for row in whole for entry in row))
+    divisor = divisor if int(denominator) > 0 else -divisor
+    rows = tuple(tuple(entry // divisor for entry in row) for row in whole)
     pivots = tuple(next(column for column, entry in enumerate(row) if entry) for row in rows)
-    return ReducedRows(pivots, rows, abs(int(denominator)))
+    return ReducedRows(pivots, rows, int(denominator) // divisor)
 
 
 def null_space(matrix: Sequence[Sequence[int]], columns: int) -> tuple[tuple[int, ...], ...]:
@@ -68,7 +71,5 @@ def primitive(vector: Sequence[int]) -> tuple[int, ...]:
     >>> primitive([4, -6, 0])
     (2, -3, 0)
     """
-    from math import gcd
-
     divisor = gcd(*vector)
     return tuple(entry // divisor for entry in vector) if divisor > 1 else tuple(vector)
