@@ -53,6 +53,10 @@ class PointGroup:
     elements: tuple[Operation, ...]
     """All elements that the symbol names, the generators first."""
 
+    def __hash__(self) -> int:
+        """Hash by the setting, which names the group; groups are keys of caches."""
+        return hash(self.setting)
+
     @property
     def operations(self) -> tuple[Operation, ...]:
         """Every operation of the group, the identity first."""
@@ -62,6 +66,11 @@ class PointGroup:
     def order(self) -> int:
         """Number of operations."""
         return len(self.operations)
+
+    @property
+    def is_enantiomorphic(self) -> bool:
+        """True when every operation is a turn, so that the crystal comes in two hands."""
+        return all(operation.determinant > 0 for operation in self.operations)
 
     @property
     def is_centrosymmetric(self) -> bool:

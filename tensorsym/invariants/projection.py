@@ -30,13 +30,14 @@ def orthonormal_basis(group: PointGroup, kind: TensorKind) -> NDArray[np.float64
     return basis
 
 
-def projected(values: NDArray[np.float64], group: PointGroup, kind: TensorKind) -> NDArray[np.float64]:
+def projected(values: NDArray[np.float64], basis: NDArray[np.float64]) -> NDArray[np.float64]:
     """Return the allowed tensor closest to the given one: ``B (B^T B)^-1 B^T T``, equal to ``(1/|G|) sum of g T``.
 
     Parameters
     ----------
     values : ndarray of shape (3,) * rank
         Components in the standard frame.
+    basis : ndarray of shape (dimension, 3**rank)
+        Orthonormal invariants from `orthonormal_basis`.
     """
-    basis = orthonormal_basis(group, kind)
     return ((basis @ values.reshape(-1)) @ basis).reshape(values.shape)

@@ -66,7 +66,7 @@ def matrix_relations(space: InvariantSpace, symbol: str, factors: Sequence[int])
 
 
 def combination_text(combination: Combination) -> str:
-    """Return a combination as a handbook prints it.
+    """Return a combination as a handbook prints it; ``0`` for an empty one.
 
     Examples
     --------
@@ -77,6 +77,8 @@ def combination_text(combination: Combination) -> str:
     >>> combination_text((("d14", -(3**0.5) / 2),))
     '-sqrt(3)/2 d14'
     """
+    if not combination:
+        return "0"
     surds = [surd_near(coefficient) for _, coefficient in combination]
     names = [name for name, _ in combination]
     if all(surd is not None and surd.radicand == 1 for surd in surds):

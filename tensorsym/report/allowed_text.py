@@ -51,7 +51,7 @@ def _matrix(form: AllowedForm) -> list[str]:
         size *= length
     if not form.independent or size >= LARGEST_GRID:
         return []
-    grids = matrix_grids(form.kind, shape, lambda position: combination_text(form.entry(position)) or "0")
+    grids = matrix_grids(form.kind, shape, lambda position: combination_text(form.entry(position)))
     factors = [
         f"{factor} on shear digits of pair {number + 1}" for number, factor in enumerate(form.factors) if factor != 1
     ]

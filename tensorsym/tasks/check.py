@@ -11,7 +11,7 @@ from tensorsym.catalog.properties import Property, property_named
 from tensorsym.errors import ShapeError
 from tensorsym.groups.placement import element_in_words, elements_in_words
 from tensorsym.invariants.axes import space_in_axes
-from tensorsym.invariants.projection import projected
+from tensorsym.invariants.projection import orthonormal_basis, projected
 from tensorsym.invariants.relations import combination_text, matrix_factor, matrix_relations
 from tensorsym.invariants.solver import invariant_space
 from tensorsym.tasks.noise import Threshold, noise_threshold
@@ -171,12 +171,12 @@ def check_tensor(
     group, frame = crystal.symmetry.group, crystal.symmetry.frame
     axes = axes or file_axes(crystal)
     turn = axes.matrix @ frame.T
-    symmetrised = turned(projected(turned(tensor, turn.T), group, row.kind), turn)
+    basis = orthonormal_basis(group, row.kind)
+    symmetrised = turned(projected(turned(tensor, turn.T), basis), turn)
     size = _norm(tensor)
     residual = _norm(tensor - symmetrised) / size if size else 0.0
-    words = tensor.size
-    share = 1.0 - invariant_space(group, row.kind).dimension / words
-    threshold = noise_threshold(size, words, share, sigma=spread, digits=digits, tolerance=tolerance)
+    share = 1.0 - len(basis) / tensor.size
+    threshold = noise_threshold(size, tensor.size, share, sigma=spread, digits=digits, tolerance=tolerance)
     return TensorVerdict(
         row, label, group, axes, turn, read_only(tensor), unit or row.unit, read_only(symmetrised), residual, size,
         threshold, notes,

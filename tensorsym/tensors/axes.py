@@ -8,6 +8,8 @@ from typing import TYPE_CHECKING
 from tensorsym.errors import AxesError
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     import numpy as np
     from numpy.typing import ArrayLike, NDArray
 
@@ -26,8 +28,13 @@ class Axes:
     """``file``, ``standard``, ``ieee``, ``international`` or the text they were asked with."""
     matrix: NDArray[np.float64]
     """Shape (3, 3), read-only; rows are unit vectors x, y, z of these axes in the reference axes."""
-    words: str
-    """The axes in crystal directions, such as ``x along [100], z along [001], y = z x x``."""
+    told: str | Callable[[], str]
+    """The axes in crystal directions, or what finds the words when they are first read."""
+
+    @property
+    def words(self) -> str:
+        """The axes in crystal directions, such as ``x along [100], z along [001], y = z x x``."""
+        return self.told if isinstance(self.told, str) else self.told()
 
     def __repr__(self) -> str:
         """Return the name and the words."""

@@ -8,6 +8,7 @@ Mandel notation has the square root of 2 on every shear digit, so that matrices 
 from __future__ import annotations
 
 from functools import lru_cache
+from itertools import product
 from typing import TYPE_CHECKING
 
 from tensorsym.errors import ShapeError, UsageError
@@ -87,11 +88,13 @@ def to_matrix(
     -------
     ndarray of shape `matrix_shape(kind)`
     """
-    _check_factors(kind, factors)
-    pairs = pair_order(order)
-    for number, place in reversed(list(enumerate(kind.pairs))):
-        values = _folded(values, place, pairs, factors[number])
-    return values
+    import numpy as np
+
+    entries, weights = _entries(kind, tuple(factors), order)
+    shape = matrix_shape(kind)
+    counts = np.bincount(entries)
+    sums = np.bincount(entries, weights=values.reshape(-1) * weights)
+    return (sums / counts).reshape(shape)
 
 
 def from_matrix(
@@ -113,42 +116,39 @@ def from_matrix(
     >>> from_matrix(d, law.kind, law.factors)[0, 1, 2]
     np.float64(2.5)
     """
-    _check_factors(kind, factors)
+    entries, weights = _entries(kind, tuple(factors), order)
     if matrix.shape != matrix_shape(kind):
         msg = f"a matrix of shape {matrix.shape} does not fit"
         raise ShapeError(msg, expected=f"shape {matrix_shape(kind)}")
-    pairs = pair_order(order)
-    for place, factor in zip(kind.pairs, factors, strict=True):
-        matrix = _unfolded(matrix, place, pairs, factor)
-    return matrix
+    return (matrix.reshape(-1)[entries] / weights).reshape((3,) * kind.rank)
 
 
-def _check_factors(kind: TensorKind, factors: Sequence[float]) -> None:
+@lru_cache(maxsize=512)
+def _entries(kind: TensorKind, factors: tuple[float, ...], order: str) -> tuple[NDArray[np.intp], NDArray[np.float64]]:
+    """Return for every component the matrix entry that holds it, and the factor between the two, both flat."""
+    import numpy as np
+
     if len(factors) != len(kind.pairs):
         msg = f"{len(factors)} factors were given for {len(kind.pairs)} index pairs"
         raise UsageError(msg)
+    digit = {pair: number for number, pair in enumerate(pair_order(order))}
+    entries, weights = [], []
+    for indices in product(range(3), repeat=kind.rank):
+        entry, weight, place = 0, 1.0, 0
+        while place < kind.rank:
+            if place in kind.pairs:
+                low, high = sorted(indices[place : place + 2])
+                entry, weight = 6 * entry + digit[low, high], weight * _shear_factor(kind, factors, place, low != high)
+                place += 2
+            else:
+                entry, place = 3 * entry + indices[place], place + 1
+        entries.append(entry)
+        weights.append(weight)
+    return np.array(entries, dtype=np.intp), np.array(weights)
 
 
-def _folded(
-    values: NDArray[np.float64], place: int, pairs: Sequence[tuple[int, int]], factor: float
-) -> NDArray[np.float64]:
-    import numpy as np
-
-    front = np.moveaxis(values, (place, place + 1), (0, 1))
-    rows = [(front[i, j] + front[j, i]) * (0.5 if i == j else 0.5 * factor) for i, j in pairs]
-    return np.moveaxis(np.stack(rows), 0, place)
-
-
-def _unfolded(
-    matrix: NDArray[np.float64], place: int, pairs: Sequence[tuple[int, int]], factor: float
-) -> NDArray[np.float64]:
-    import numpy as np
-
-    front = np.moveaxis(matrix, place, 0)
-    values = np.empty((3, 3, *front.shape[1:]))
-    for digit, (i, j) in enumerate(pairs):
-        values[i, j] = values[j, i] = front[digit] / (1 if i == j else factor)
-    return np.moveaxis(values, (0, 1), (place, place + 1))
+def _shear_factor(kind: TensorKind, factors: tuple[float, ...], place: int, is_shear: bool) -> float:  # noqa: FBT001
+    return factors[kind.pairs.index(place)] if is_shear else 1.0
 
 
 @lru_cache(maxsize=64)

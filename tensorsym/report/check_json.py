@@ -1,0 +1,60 @@
+"""The verdicts of a check as one JSON document."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+from tensorsym.report.allowed_json import axes_document, group_document, structure_document
+
+if TYPE_CHECKING:
+    from tensorsym.tasks.check import TensorVerdict
+    from tensorsym.tasks.check_file import CheckReport
+    from tensorsym.tasks.check_sites import SiteVerdict
+
+
+def check_document(report: CheckReport) -> dict[str, Any]:
+    """Return the document, schema ``tensorsym/check/1``."""
+    return {
+        "schema": "tensorsym/check/1",
+        "source": report.source,
+        "format": report.format,
+        "structure": structure_document(report.crystal),
+        "group": group_document(report.crystal.symmetry.group),
+        "axes": axes_document(report.axes, report.elements_in_words),
+        "verdict": report.verdict,
+        "tensors": [verdict_document(verdict) for verdict in report.verdicts],
+        "notes": list(report.notes),
+    }
+
+
+def verdict_document(verdict: TensorVerdict | SiteVerdict) -> dict[str, Any]:
+    """Return the part of one tensor."""
+    return {
+        "property": verdict.row.name,
+        "label": verdict.label,
+        "verdict": verdict.verdict,
+        "residual": verdict.residual,
+        "size": verdict.size,
+        "unit": verdict.unit,
+        "threshold": verdict.threshold.relative,
+        "threshold_source": verdict.threshold.source,
+        "noise": verdict.threshold.absolute,
+        "axes": axes_document(verdict.axes, verdict.elements_in_words),
+        "worst": [
+            {
+                "component": offence.component,
+                "value": offence.value,
+                "allowed_value": offence.allowed_value,
+                "rule": offence.rule,
+                "operation": offence.operation,
+                "change": offence.change,
+            }
+            for offence in verdict.worst
+        ],
+        "certificate": {
+            "elimination": verdict.certificate.by_elimination,
+            "characters": verdict.certificate.by_characters,
+            "agree": verdict.certificate.agree,
+        },
+        "notes": list(verdict.notes),
+    }

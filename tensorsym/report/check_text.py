@@ -1,0 +1,69 @@
+"""The verdicts of a check as a screen of text."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from tensorsym.report.numbers import residual, short
+from tensorsym.report.tables import paragraph
+
+if TYPE_CHECKING:
+    from tensorsym.tasks.check import Offence, TensorVerdict
+    from tensorsym.tasks.check_file import CheckReport
+    from tensorsym.tasks.check_sites import SiteVerdict
+
+WORDS = {
+    "consistent": "consistent",
+    "inconsistent": "NOT CONSISTENT",
+    "unconstrained": "nothing to hold it to: the class leaves every component free",
+}
+
+
+def check_text(report: CheckReport) -> str:
+    """Return the screen of a check: the crystal, then each tensor with its verdict and its worst components."""
+    symmetry = report.crystal.symmetry
+    group = symmetry.group
+    lines = [
+        f"{report.crystal.title}   {symmetry.international} ({symmetry.number})   "
+        f"class {group.hermann_mauguin} ({group.schoenflies}), order {group.order}",
+        f"axes: {report.axes.words}",
+        f"      {report.elements_in_words}",
+    ]
+    lines += [paragraph("Note:", [note]) for note in report.notes]
+    return "\n\n".join(["\n".join(lines), *(verdict_text(verdict) for verdict in report.verdicts), _summary(report)])
+
+
+def verdict_text(verdict: TensorVerdict | SiteVerdict) -> str:
+    """Return the paragraph of one tensor."""
+    name = f"{verdict.row.name}, {verdict.label}" if verdict.label else verdict.row.name
+    lines = [
+        f"{name}     {WORDS[verdict.verdict]}",
+        f"    residual {residual(verdict.residual)}, size {short(verdict.size)} {verdict.unit}, "
+        f"threshold {residual(verdict.threshold.relative)} ({verdict.threshold.source})",
+    ]
+    if verdict.verdict == "inconsistent":
+        lines += [_offence(offence, verdict.unit) for offence in verdict.worst]
+    lines += [paragraph("    note:", [note]) for note in verdict.notes]
+    return "\n".join(lines)
+
+
+def _offence(offence: Offence, unit: str) -> str:
+    rule = "must vanish" if offence.rule == "0" else f"must equal {offence.rule}"
+    if offence.rule == offence.component:
+        rule = "is tied to others"
+    return paragraph(
+        f"    {offence.component} = {short(offence.value)}",
+        [
+            f"{rule}: allowed {short(offence.allowed_value)} {unit}",
+            f"changed by {short(offence.change)} under {offence.operation}",
+        ],
+    )
+
+
+def _summary(report: CheckReport) -> str:
+    bad = sum(verdict.verdict == "inconsistent" for verdict in report.verdicts)
+    total = len(report.verdicts)
+    noun = "tensor" if total == 1 else "tensors"
+    if not bad:
+        return f"{total} {noun}, all consistent with the symmetry."
+    return f"{bad} of {total} {noun} not consistent with the symmetry."

@@ -1,0 +1,1 @@
+"""Why numbers disagree with a crystal: hypotheses tried, weighed and named."""
