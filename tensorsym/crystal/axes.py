@@ -52,7 +52,7 @@ def axes_for(crystal: Crystal, spec: str) -> Axes:
     if spec == "file":
         return Axes("file", _IDENTITY, partial(_file_words, crystal))
     if spec in ("ieee", "international"):
-        cell = standard_cell(crystal)
+        cell = crystal.symmetry.standard_cell
         matrix = read_only(_ieee(crystal, cell) if spec == "ieee" else _international(crystal, cell))
         name = "IEEE 176" if spec == "ieee" else "International Tables"
         words = f"{name}: {words_for(matrix, crystal)}"
@@ -127,17 +127,11 @@ def words_for(matrix: NDArray[np.float64], crystal: Crystal) -> str:
     return ", ".join(words) + ("" if told["y"] else ", y = z x x")
 
 
-def standard_cell(crystal: Crystal) -> NDArray[np.float64]:
-    """Return the conventional cell of the space group in the file's Cartesian axes, rows a, b, c in angstrom."""
-    # Of spglib: x_standard = P x + p, so the standard basis vectors are the columns of (a b c) P^-1.
-    transformation = np.asarray(crystal.symmetry.dataset.transformation_matrix)
-    return np.asarray(np.linalg.inv(transformation).T @ crystal.lattice)
-
-
 def miller_cell(crystal: Crystal) -> NDArray[np.float64]:
     """Return the cell that Miller indices refer to: the file's own unless it is smaller than the conventional one."""
-    volume = abs(float(np.linalg.det(crystal.symmetry.dataset.transformation_matrix)))
-    return crystal.lattice if abs(volume - 1.0) < 1e-3 else standard_cell(crystal)
+    standard = crystal.symmetry.standard_cell
+    ratio = abs(float(np.linalg.det(standard) / np.linalg.det(crystal.lattice)))
+    return crystal.lattice if abs(ratio - 1.0) < 1e-3 else standard
 
 
 def _ieee(crystal: Crystal, cell: NDArray[np.float64]) -> NDArray[np.float64]:

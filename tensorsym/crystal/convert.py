@@ -2,16 +2,14 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING, Any
+from dataclasses import replace
+from typing import Any
 
 import numpy as np
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.crystal.formats_cif import site_label
 from tensorsym.errors import StructureError
-
-if TYPE_CHECKING:
-    from tensorsym.crystal.crystal import Crystal
 
 AXES = "the Cartesian axes of the object, given by its lattice vectors"
 
@@ -32,7 +30,7 @@ def from_pymatgen(structure: Any, *, symprec: float = 1e-3) -> Crystal:
         raise StructureError(msg)
     species = [site_label(site) for site in structure]
     if hasattr(structure, "lattice"):
-        found = crystal_from(
+        found = Crystal(
             structure.lattice.matrix,
             structure.frac_coords,
             species,
@@ -42,7 +40,7 @@ def from_pymatgen(structure: Any, *, symprec: float = 1e-3) -> Crystal:
         )
     else:
         found = _boxed(structure.cart_coords, species)
-    return found.at(symprec)
+    return replace(found, symprec=symprec)
 
 
 def from_ase(atoms: Any, *, symprec: float = 1e-3) -> Crystal:
@@ -59,9 +57,9 @@ def from_ase(atoms: Any, *, symprec: float = 1e-3) -> Crystal:
     species = list(atoms.get_chemical_symbols())
     cell = np.array(atoms.cell)
     if abs(np.linalg.det(cell)) < 1e-9:
-        return _boxed(atoms.get_positions(), species).at(symprec)
+        return replace(_boxed(atoms.get_positions(), species), symprec=symprec)
     positions = atoms.get_scaled_positions(wrap=False)
-    return crystal_from(cell, positions, species, source="", format="ASE Atoms", axes_words=AXES).at(symprec)
+    return Crystal(cell, positions, species, source="", format="ASE Atoms", axes_words=AXES, symprec=symprec)
 
 
 def _boxed(coordinates: Any, species: list[str]) -> Crystal:
@@ -74,6 +72,4 @@ def _boxed(coordinates: Any, species: list[str]) -> Crystal:
     edge = float(np.ptp(places, axis=0).max()) + VACUUM
     positions = (places - places.mean(axis=0)) / edge + 0.5
     note = "a molecule in a cubic box: operations that the box does not share are not found"
-    return crystal_from(
-        np.eye(3) * edge, positions, species, source="", format="molecule", axes_words=AXES, notes=(note,)
-    )
+    return Crystal(np.eye(3) * edge, positions, species, source="", format="molecule", axes_words=AXES, notes=(note,))

@@ -7,13 +7,12 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.errors import StructureError
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from tensorsym.crystal.crystal import Crystal
 
 AXES = "a CIF has no Cartesian axes; ours are c along z, a in the xz plane"
 
@@ -48,7 +47,7 @@ def read_cif(text: str, source: str) -> Crystal:
     species = [site_label(site) for site in structure]
     if any(has_oxidation_state(site) for site in structure):
         notes.append("oxidation states are not used to tell atoms apart")
-    return crystal_from(
+    return Crystal(
         lattice, structure.frac_coords, species, source=source, format="CIF", axes_words=AXES,
         title=_title(text, structure.composition.reduced_formula), notes=notes,
     )  # fmt: skip

@@ -3,14 +3,11 @@
 from __future__ import annotations
 
 import json
-from typing import TYPE_CHECKING, Any
+from typing import Any
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.crystal.formats_vasp import AXES, read_poscar
 from tensorsym.errors import StructureError
-
-if TYPE_CHECKING:
-    from tensorsym.crystal.crystal import Crystal
 
 DEEPEST = 6
 """How deep a structure may lie in a document."""
@@ -51,7 +48,7 @@ def crystal_in_document(document: Any, source: str) -> Crystal:
     except (KeyError, TypeError, IndexError) as error:
         msg = f"the structure lacks {error}"
         raise StructureError(msg, where=source, expected="lattice.matrix, and abc and species of every site") from error
-    return crystal_from(lattice, positions, species, source=source, format="JSON", axes_words=AXES)
+    return Crystal(lattice, positions, species, source=source, format="JSON", axes_words=AXES)
 
 
 def _structure_in(node: Any, depth: int) -> Any:

@@ -7,14 +7,13 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.crystal.numbers_in import finite_number, line_at, numbers_in
 from tensorsym.errors import StructureError
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from tensorsym.crystal.crystal import Crystal
 
 AXES = "the file's Cartesian axes, given by its lattice vectors"
 BOHR = 0.529177210903
@@ -47,7 +46,7 @@ def read_pw_output(text: str, source: str) -> Crystal:
     if not species:
         raise StructureError("holds no positions", where=source, hint="the file may be cut off")
     positions = np.array(cartesian) * scale @ _inverse(lattice, source)
-    return crystal_from(lattice, positions, species, source=source, format="pw.x output", axes_words=AXES)
+    return Crystal(lattice, positions, species, source=source, format="pw.x output", axes_words=AXES)
 
 
 def looks_like_pw_input(text: str) -> bool:
@@ -72,7 +71,7 @@ def read_pw_input(text: str, source: str) -> Crystal:
     if unit != "crystal":
         factor = {"bohr": BOHR, "angstrom": 1.0}.get(unit, alat)
         positions = positions * factor @ _inverse(lattice, source)
-    return crystal_from(lattice, positions, species, source=source, format="pw.x input", axes_words=AXES)
+    return Crystal(lattice, positions, species, source=source, format="pw.x input", axes_words=AXES)
 
 
 def _input_cell(settings: dict[str, str], lines: list[str], source: str) -> tuple[NDArray[np.float64], float]:

@@ -3,17 +3,13 @@
 from __future__ import annotations
 
 import re
-from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.crystal.elements import element_named
 from tensorsym.crystal.numbers_in import finite_number, line_at, numbers_in
 from tensorsym.errors import StructureError
-
-if TYPE_CHECKING:
-    from tensorsym.crystal.crystal import Crystal
 
 AXES = "the file's Cartesian axes, given by its lattice vectors"
 
@@ -42,7 +38,7 @@ def read_xsf(text: str, source: str) -> Crystal:
         label, _, rest = line.strip().partition(" ")
         species.append(element_named(label, f"{source}, line {begin + 3 + row}"))
         cartesian.append(numbers_in(rest, 3, source, begin + 3 + row, f"position {row + 1}"))
-    return crystal_from(
+    return Crystal(
         lattice, _fractional(cartesian, lattice, source), species, source=source, format="XSF", axes_words=AXES
     )
 
@@ -74,7 +70,7 @@ def read_xyz(text: str, source: str) -> Crystal:
             raise StructureError(msg, where=f"{source}, line {3 + row}", expected=f"at least {position_column + 3}")
         species.append(words[label_column])
         cartesian.append(numbers_in(" ".join(words[position_column:]), 3, source, 3 + row, f"position {row + 1}"))
-    return crystal_from(
+    return Crystal(
         lattice, _fractional(cartesian, lattice, source), species, source=source, format="extended XYZ", axes_words=AXES
     )
 

@@ -8,14 +8,13 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.crystal.crystal import crystal_from
+from tensorsym.crystal.crystal import Crystal
 from tensorsym.crystal.numbers_in import finite_number, line_at, numbers_in
 from tensorsym.errors import StructureError
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
-    from tensorsym.crystal.crystal import Crystal
 
 AXES = "the file's Cartesian axes, given by its lattice vectors"
 
@@ -68,7 +67,7 @@ def read_poscar(text: str, source: str) -> Crystal:
     if labels[0].startswith("atom "):
         species = _labels_behind(lines[place + 1 : place + 1 + total]) or species
     title = lines[0].strip() if not _is_formula_list(lines[0]) else ""
-    return crystal_from(lattice, positions, species, source=source, format="POSCAR", axes_words=AXES, title=title)
+    return Crystal(lattice, positions, species, source=source, format="POSCAR", axes_words=AXES, title=title)
 
 
 def _species_and_counts(lines: list[str], source: str) -> tuple[list[str], list[int], int]:
@@ -126,7 +125,7 @@ def read_outcar(text: str, source: str) -> Crystal:
         for row in range(total)
     ]  # fmt: skip
     species = [label.capitalize() for label, count in zip(labels, counts, strict=False) for _ in range(count)]
-    return crystal_from(lattice, positions, species, source=source, format="OUTCAR", axes_words=AXES)
+    return Crystal(lattice, positions, species, source=source, format="OUTCAR", axes_words=AXES)
 
 
 def _first(lines: Iterable[str], mark: str, source: str) -> int:
@@ -159,7 +158,7 @@ def read_vasprun(text: str, source: str) -> Crystal:
     species = [(row.findtext("c") or "").strip() for row in atoms.iter("rc")]
     lattice = _vectors(structure.find("crystal/varray[@name='basis']"), source, "lattice vector")
     positions = _vectors(structure.find("varray[@name='positions']"), source, "position")
-    return crystal_from(lattice, positions, species, source=source, format="vasprun.xml", axes_words=AXES)
+    return Crystal(lattice, positions, species, source=source, format="vasprun.xml", axes_words=AXES)
 
 
 def _vectors(element: ET.Element | None, source: str, what: str) -> list[list[float]]:

@@ -49,16 +49,16 @@ def step_at(crystal: Crystal, symprec: float) -> LadderStep:
     return LadderStep(symprec, symmetry.number, symmetry.international, symmetry.group.hermann_mauguin)
 
 
-def ladder_warnings(crystal: Crystal) -> tuple[str, ...]:
-    """Return a warning for each side on which the group changes within a factor `NEAR` of the tolerance in use."""
+def warnings_near(crystal: Crystal, symprec: float) -> tuple[str, ...]:
+    """Return a warning for each side on which the group changes within a factor `NEAR` of a tolerance."""
     here = crystal.symmetry
     warnings = []
     for step in crystal.ladder:
-        side = step.symprec / here.symprec
+        side = step.symprec / symprec
         if step.number in (here.number, 0) or not 1 / (NEAR * 1.01) <= side <= NEAR * 1.01:
             continue
         warnings.append(
-            f"the group depends on the tolerance: {here.international} ({here.number}) at symprec {here.symprec:g}, "
+            f"the group depends on the tolerance: {here.international} ({here.number}) at symprec {symprec:g}, "
             f"but {step.international} ({step.number}), class {step.point_group}, at {step.symprec:g}"
         )
     return tuple(warnings)

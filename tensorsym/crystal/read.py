@@ -5,6 +5,7 @@ from __future__ import annotations
 import bz2
 import gzip
 import lzma
+from dataclasses import replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -43,7 +44,7 @@ def read(path: str | PathLike[str], *, symprec: float = 1e-3) -> Crystal:
     """
     text = text_of(path)
     source = str(path)
-    return _reader(text, source)(text, source).at(symprec)
+    return replace(_reader(text, source)(text, source), symprec=symprec)
 
 
 def text_of(path: str | PathLike[str]) -> str:

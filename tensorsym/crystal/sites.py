@@ -72,6 +72,9 @@ def atom_images(crystal: Crystal) -> NDArray[np.intp]:
         If an operation carries an atom to no atom of its species within a few times the tolerance.
     """
     symmetry = crystal.symmetry
+    if not symmetry.is_of_file_cell:
+        msg = "the cell is a supercell whose shape breaks the class, so its atoms cannot be followed one by one"
+        raise StructureError(msg, where=crystal.source or None, hint="give the primitive or the conventional cell")
     positions, numbers = crystal.positions, np.array(crystal.numbers)
     images = np.empty((len(symmetry.rotations), len(positions)), dtype=np.intp)
     for number in np.unique(numbers):

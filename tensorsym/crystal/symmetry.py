@@ -2,18 +2,20 @@
 
 from __future__ import annotations
 
+import os
+import threading
+from contextlib import contextmanager
 from dataclasses import dataclass
-from functools import lru_cache
-from inspect import signature
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, NoReturn
 
 import numpy as np
 
-from tensorsym.crystal.frame import placed_group
+from tensorsym.crystal.frame import PlacedGroup, placed_group
 from tensorsym.errors import GroupSymbolError, StructureError
-from tensorsym.groups.point_group import standard_point_group
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
+
     from numpy.typing import NDArray
 
     from tensorsym.crystal.crystal import Crystal
@@ -61,6 +63,14 @@ class CrystalSymmetry:
             f"symprec {self.symprec:g})"
         )
 
+    def cartesian_rotations(self) -> NDArray[np.float64]:
+        """Return the rotations as orthogonal matrices in the file's Cartesian axes, shape (n, 3, 3), exact to rounding."""
+        standard = np.array([operation.cartesian() for operation in self.group.operations])
+        ideal = self.frame.T @ standard @ self.frame
+        rough = self.cell.T @ self.rotations @ np.linalg.inv(self.cell.T)
+        nearest = np.argmax(np.einsum("nij,mij->nm", rough, ideal), axis=1)
+        return np.asarray(ideal[nearest])
+
     @property
     def is_of_file_cell(self) -> bool:
         """False when the file's cell is a supercell whose shape breaks the class of the crystal."""
@@ -86,11 +96,11 @@ def symmetry_of(crystal: Crystal, symprec: float) -> CrystalSymmetry:
     lattice = crystal.lattice
     standard = np.linalg.solve(found.transformation_matrix.T, lattice)
     rotations, translations, cell = found.rotations, found.translations, lattice
-    placed = _placed(rotations, cell, crystal)
+    placed = _placed(rotations, cell)
     if placed is None or placed.group.hermann_mauguin != found.pointgroup.strip():
         cell = standard
         rotations, translations = _operations_of_setting(found)
-        placed = _placed(rotations, cell, crystal) or _refuse(crystal, found.pointgroup)
+        placed = _placed(rotations, cell) or _refuse(crystal, found.pointgroup)
     for array in (rotations, translations, found.equivalent_atoms, standard):
         array.setflags(write=False)
     return CrystalSymmetry(
@@ -98,3 +108,59 @@ def symmetry_of(crystal: Crystal, symprec: float) -> CrystalSymmetry:
         translations, tuple(found.wyckoffs), tuple(found.site_symmetry_symbols), found.equivalent_atoms, standard,
         symprec,
     )  # fmt: skip
+
+
+def _dataset(crystal: Crystal, symprec: float) -> Any:
+    """Return spglib's data set, or its reason for having none."""
+    import spglib
+
+    where = crystal.source or None
+    with _reasons_kept():
+        try:
+            found = spglib.get_symmetry_dataset((crystal.lattice, crystal.positions, crystal.numbers), symprec=symprec)
+        except Exception as error:  # spglib's own type of error, whose place differs between versions
+            msg = f"no symmetry found at symprec {symprec:g}: {error}"
+            raise StructureError(msg, where=where, hint="try another symprec") from error
+    if found is None:
+        msg = f"no symmetry found at symprec {symprec:g}"
+        raise StructureError(msg, where=where, hint="try another symprec, check for overlapping atoms")
+    return found
+
+
+_SWITCH = "SPGLIB_OLD_ERROR_HANDLING"
+_LOCK = threading.Lock()
+
+
+@contextmanager
+def _reasons_kept() -> Iterator[None]:
+    """Make spglib raise its reason; its default returns None and loses it. Other threads wait meanwhile."""
+    with _LOCK:
+        before = os.environ.get(_SWITCH)
+        os.environ[_SWITCH] = "0"
+        try:
+            yield
+        finally:
+            if before is None:
+                del os.environ[_SWITCH]
+            else:
+                os.environ[_SWITCH] = before
+
+
+def _placed(rotations: NDArray[np.intc], cell: NDArray[np.float64]) -> PlacedGroup | None:
+    try:
+        return placed_group(rotations, cell)
+    except GroupSymbolError:
+        return None
+
+
+def _operations_of_setting(found: Any) -> tuple[NDArray[np.intc], NDArray[np.float64]]:
+    """Return the operations of the standard setting from spglib's table."""
+    import spglib
+
+    table = spglib.get_symmetry_from_database(found.hall_number)
+    return table["rotations"], table["translations"]
+
+
+def _refuse(crystal: Crystal, point_group: str) -> NoReturn:
+    msg = f"the operations found form no group of class {point_group}"
+    raise StructureError(msg, where=crystal.source or None, hint="try another symprec")

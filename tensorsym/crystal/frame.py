@@ -1,0 +1,154 @@
+"""The standard frame of a group of integer rotations, placed in the Cartesian axes of the lattice they act on.
+
+Which lattice directions may be x, y and z is exact and depends on the rotations alone, so it is prepared once for each
+set; batches of crystals meet few distinct ones. What is left for a crystal is a handful of small products.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+from itertools import product
+from typing import TYPE_CHECKING, NamedTuple
+
+import numpy as np
+
+from tensorsym.groups.point_group import PointGroup, standard_point_group
+from tensorsym.groups.recognition import frame_directions
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+EXACT = 1e-10
+"""A metric that the rotations change by no more than this share of itself needs no symmetrising."""
+
+SQUARE = 1e-6
+"""A direction this close to perpendicular to the file's axis has no nearer sense."""
+
+_SENSES = np.array([3.0, 2.0, 1.0])
+"""The sense of such a direction: the one with the larger of these components."""
+
+_TIES = np.eye(3) + 1e-3 * np.array([[0.0, 0.31, 0.17], [0.07, 0.0, 0.13], [0.05, 0.11, 0.0]])
+"""Weights of the entries of a frame: how close it is to the file's axes, and a fixed choice between equal ones."""
+
+
+class PlacedGroup(NamedTuple):
+    """A point group and where its standard frame lies."""
+
+    group: PointGroup
+    """The class in its standard setting."""
+    frame: NDArray[np.float64]
+    """Shape (3, 3), read-only: rows are unit x, y, z of the standard frame in the lattice's Cartesian axes."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Preparation:
+    """The part that depends on the rotations alone."""
+
+    group: PointGroup
+    average: NDArray[np.float64]
+    """Shape (9, 9): carries a metric to its mean over the group."""
+    axes: str
+    """Which axes the candidates give: "", "y", "z" or "xz"."""
+    first: NDArray[np.float64]
+    """Shape (m, 3): lattice components of x (or of the single axis)."""
+    second: NDArray[np.float64]
+    """Shape (m, 3): lattice components of z."""
+
+
+def placed_group(rotations: NDArray[np.intc], lattice: NDArray[np.float64]) -> PlacedGroup:
+    """Return the class of a group of rotations and its standard frame, right-handed and as close to the axes as it can.
+
+    Several frames put the same standard group onto the crystal (a 4-fold class may be turned by 90 degrees, a class 4
+    by any angle about z). The one closest to the Cartesian axes is taken: largest trace, so that the frame is the unit
+    matrix or a renaming of the axes where that is possible.
+
+    Parameters
+    ----------
+    rotations : ndarray of int, shape (n, 3, 3)
+        Matrices that act on columns of fractional coordinates; repetitions are allowed.
+    lattice : ndarray of shape (3, 3)
+        Rows are the lattice vectors. A lattice that the rotations change slightly is symmetrised first: the mean metric
+        with the least turn and stretch.
+
+    Raises
+    ------
+    GroupSymbolError
+        If the rotations form none of the 32 classes.
+
+    Examples
+    --------
+    >>> quarter = np.array([np.linalg.matrix_power([[0, -1, 0], [1, 0, 0], [0, 0, 1]], n) for n in range(4)])
+    >>> placed = placed_group(quarter, np.diag([3.0, 3.0, 5.0]))
+    >>> placed.group.hermann_mauguin, placed.frame.tolist()
+    ('4', [[1.0, 0.0, 0.0], [0.0, 1.0, 0.0], [0.0, 0.0, 1.0]])
+    """
+    prepared = _prepared(np.ascontiguousarray(rotations, dtype=np.intc).tobytes())
+    cell = _symmetrised(lattice, prepared.average)
+    if prepared.axes == "":
+        frame = np.eye(3)
+    elif prepared.axes == "xz":
+        frame = _closest_of(prepared.first @ cell, prepared.second @ cell)
+    else:
+        frame = _closest_turn(_unit(prepared.first[0] @ cell), "xyz".index(prepared.axes))
+    frame += 0.0
+    frame.setflags(write=False)
+    return PlacedGroup(prepared.group, frame)
+
+
+@lru_cache(maxsize=4096)
+def _prepared(rotations: bytes) -> _Preparation:
+    matrices = np.unique(np.frombuffer(rotations, dtype=np.intc).reshape(-1, 3, 3), axis=0)
+    found = frame_directions(frozenset(tuple(map(tuple, matrix)) for matrix in matrices.tolist()))
+    average = np.mean([np.kron(matrix.T, matrix.T) for matrix in matrices], axis=0)
+    axes = "".join(name for name, direction in zip("xyz", found.candidates[0], strict=True) if direction is not None)
+    candidates = [[direction for direction in candidate if direction is not None] for candidate in found.candidates]
+    if axes == "xz":
+        senses = np.array(list(product((1.0, -1.0), repeat=2)))
+        table = np.array(candidates, dtype=float)[:, None, :, :] * senses[None, :, :, None]
+    else:
+        table = np.array(candidates[:1], dtype=float)
+    table = table.reshape(-1, max(len(axes), 1), 3)
+    group = standard_point_group(found.hermann_mauguin)
+    return _Preparation(group, average, axes, table[:, 0], table[:, -1])
+
+
+def _symmetrised(lattice: NDArray[np.float64], average: NDArray[np.float64]) -> NDArray[np.float64]:
+    """Return the lattice that has the mean metric and is turned against the given one by nothing."""
+    metric = lattice @ lattice.T
+    mean = (average @ metric.reshape(9)).reshape(3, 3)
+    if np.abs(mean - metric).max() <= EXACT * metric.max():
+        return lattice
+    root = np.linalg.cholesky(mean)
+    left, _, right = np.linalg.svd(root.T @ lattice)
+    return np.asarray(root @ (left @ right))
+
+
+def _closest_of(x: NDArray[np.float64], z: NDArray[np.float64]) -> NDArray[np.float64]:
+    """Return the frame closest to the unit matrix among rows of x and z, each pair perpendicular."""
+    x = x / np.sqrt(np.einsum("ij,ij->i", x, x))[:, None]
+    z = z / np.sqrt(np.einsum("ij,ij->i", z, z))[:, None]
+    frames = np.empty((len(x), 3, 3))
+    frames[:, 0], frames[:, 2] = x, z
+    frames[:, 1, 0] = z[:, 1] * x[:, 2] - z[:, 2] * x[:, 1]
+    frames[:, 1, 1] = z[:, 2] * x[:, 0] - z[:, 0] * x[:, 2]
+    frames[:, 1, 2] = z[:, 0] * x[:, 1] - z[:, 1] * x[:, 0]
+    return np.asarray(frames[int(np.argmax(frames.reshape(-1, 9) @ _TIES.reshape(9)))])
+
+
+def _closest_turn(axis: NDArray[np.float64], place: int) -> NDArray[np.float64]:
+    """Return the frame closest to the unit matrix among all whose row `place` lies along the axis, in either sense.
+
+    The least turn that carries one unit vector onto another goes about their common normal.
+    """
+    aligned = float(axis[place])
+    if aligned < -SQUARE or (aligned < SQUARE and float(axis @ _SENSES) < 0):
+        axis, aligned = -axis, -aligned
+    turn = np.zeros((3, 3))
+    turn[place], turn[:, place] = axis, -axis
+    turn[place, place] = 0.0
+    return np.asarray(np.eye(3) + turn + turn @ turn / (1.0 + aligned))
+
+
+def _unit(vector: NDArray[np.float64]) -> NDArray[np.float64]:
+    return np.asarray(vector / np.sqrt(vector @ vector))
