@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TYPE_CHECKING
 
@@ -181,6 +181,24 @@ def check_tensor(
         row, label, group, axes, turn, read_only(tensor), unit or row.unit, read_only(symmetrised), residual, size,
         threshold, notes,
     )  # fmt: skip
+
+
+def verdict_on(verdict: TensorVerdict, values: NDArray[np.float64]) -> TensorVerdict:
+    """Return the verdict on other numbers for the same class, property and axes, with no noise stated."""
+    group, row, turn = verdict.group, verdict.row, verdict.turn
+    symmetrised = turned(projected(turned(values, turn.T), orthonormal_basis(group, row.kind)), turn)
+    size = _norm(values)
+    residual = _norm(values - symmetrised) / size if size else 0.0
+    threshold = noise_threshold(size, values.size, 1.0)
+    return replace(
+        verdict,
+        values=read_only(values),
+        symmetrised=read_only(symmetrised),
+        residual=residual,
+        size=size,
+        threshold=threshold,
+        notes=(),
+    )
 
 
 def full_tensor(values: ArrayLike, row: Property, order: str = VOIGT_ORDER) -> NDArray[np.float64]:
