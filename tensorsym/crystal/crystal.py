@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property, reduce
 from math import gcd
 from typing import TYPE_CHECKING
@@ -16,6 +16,8 @@ from tensorsym.crystal.symmetry import CrystalSymmetry, symmetry_of
 from tensorsym.crystal.validation import checked_lattice, checked_positions, checked_symprec, refuse_overlaps
 
 if TYPE_CHECKING:
+    from typing import Self
+
     from numpy.typing import NDArray
 
     from tensorsym.groups.point_group import PointGroup
@@ -91,6 +93,10 @@ class Crystal:
     def formula(self) -> str:
         """Species and how many of each, in lowest terms, in the order of the file: ``SiO2``."""
         return _formula(self.species)
+
+    def at(self, symprec: float) -> Self:
+        """Return the same crystal, its symmetry found at another tolerance."""
+        return replace(self, symprec=symprec)
 
     @cached_property
     def numbers(self) -> NDArray[np.intc]:

@@ -22,6 +22,8 @@ if TYPE_CHECKING:
 EXACT = 1e-10
 """A metric that the rotations change by no more than this share of itself needs no symmetrising."""
 
+_MOST_STEPS = 8
+
 SQUARE = 1e-6
 """A direction this close to perpendicular to the file's axis has no nearer sense."""
 
@@ -114,14 +116,17 @@ def _prepared(rotations: bytes) -> _Preparation:
 
 
 def _symmetrised(lattice: NDArray[np.float64], average: NDArray[np.float64]) -> NDArray[np.float64]:
-    """Return the lattice that has the mean metric and is turned against the given one by nothing."""
-    metric = lattice @ lattice.T
-    mean = (average @ metric.reshape(9)).reshape(3, 3)
-    if np.abs(mean - metric).max() <= EXACT * metric.max():
-        return lattice
-    root = np.linalg.cholesky(mean)
-    left, _, right = np.linalg.svd(root.T @ lattice)
-    return np.asarray(root @ (left @ right))
+    """Return the lattice that has the mean metric, stretched but not turned against the given one.
+
+    Newton's method for ``B B^T = mean``: each step squares the deviation, and a symmetrical stretch turns nothing.
+    """
+    for _ in range(_MOST_STEPS):
+        metric = lattice @ lattice.T
+        excess = (average @ metric.reshape(9)).reshape(3, 3) - metric
+        if abs(excess).max() <= EXACT * metric.max():
+            break
+        lattice = lattice + 0.5 * excess @ np.linalg.inv(lattice).T
+    return lattice
 
 
 def _closest_of(x: NDArray[np.float64], z: NDArray[np.float64]) -> NDArray[np.float64]:

@@ -1,64 +1,128 @@
-"""The group over a ladder of tolerances: where it is on a plateau, and where it changes."""
+"""The group over a ladder of tolerances: where it holds, where it changes, and which atoms decide."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+import numpy as np
+
+from tensorsym.crystal.images import atom_images_and_misses
+from tensorsym.crystal.symmetry import CrystalSymmetry, symmetry_of
 from tensorsym.errors import StructureError
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from numpy.typing import NDArray
+
     from tensorsym.crystal.crystal import Crystal
 
 STEPS = (1e-5, 1e-4, 1e-3, 1e-2, 1e-1)
-"""Tolerances of the ladder, in angstrom."""
+"""Tolerances in Å."""
 
 NEAR = 10.0
-"""A change of group within this factor of the tolerance in use is warned of."""
+"""A change of the group within this factor of the tolerance in use deserves a warning."""
+
+MOST_NAMED = 3
+"""Largest number of atoms that a warning names."""
 
 
 @dataclass(frozen=True, slots=True)
 class LadderStep:
-    """The group at one tolerance; number 0 and empty symbols where none was found."""
+    """The group at one tolerance."""
 
     symprec: float
-    """Tolerance, angstrom."""
+    """Å."""
     number: int
     """Number of the space group."""
     international: str
-    """Its short Hermann-Mauguin symbol."""
+    """Short Hermann-Mauguin symbol of the space group."""
     point_group: str
     """Short Hermann-Mauguin symbol of the class."""
-    reason: str = ""
-    """Why no group was found."""
 
 
 def ladder_of(crystal: Crystal) -> tuple[LadderStep, ...]:
-    """Return the group of a crystal at every tolerance of `STEPS`."""
-    return tuple(step_at(crystal, symprec) for symprec in STEPS)
+    """Return the group at each tolerance of `STEPS`; a tolerance at which none is found is left out."""
+    steps = []
+    for symprec in STEPS:
+        found = _symmetry_or_none(crystal, symprec)
+        if found is not None:
+            steps.append(LadderStep(symprec, found.number, found.international, found.group.hermann_mauguin))
+    return tuple(steps)
 
 
-def step_at(crystal: Crystal, symprec: float) -> LadderStep:
-    """Return the group of a crystal at one tolerance; a failure is a step without a group, with its reason."""
-    from tensorsym.crystal.symmetry import symmetry_of
+def plateaus_in_words(ladder: Sequence[LadderStep]) -> str:
+    """Return the ladder in words, such as ``P1 (1) at 1e-05, Fm-3m (225) from 0.0001 to 0.1``.
 
-    try:
-        symmetry = symmetry_of(crystal, symprec)
-    except StructureError as error:
-        return LadderStep(symprec, 0, "", "", error.message)
-    return LadderStep(symprec, symmetry.number, symmetry.international, symmetry.group.hermann_mauguin)
+    >>> steps = [(1e-5, 1, "P1", "1"), (1e-4, 225, "Fm-3m", "m-3m"), (1e-3, 225, "Fm-3m", "m-3m")]
+    >>> plateaus_in_words([LadderStep(*step) for step in steps])
+    'P1 (1) at 1e-05, Fm-3m (225) from 0.0001 to 0.001'
+    """
+    plateaus: list[list[LadderStep]] = []
+    for step in ladder:
+        if plateaus and plateaus[-1][0].number == step.number:
+            plateaus[-1].append(step)
+        else:
+            plateaus.append([step])
+    words = []
+    for steps in plateaus:
+        first, last = steps[0], steps[-1]
+        span = f"at {first.symprec:g}" if first is last else f"from {first.symprec:g} to {last.symprec:g}"
+        words.append(f"{first.international} ({first.number}) {span}")
+    return ", ".join(words)
 
 
 def warnings_near(crystal: Crystal, symprec: float) -> tuple[str, ...]:
-    """Return a warning for each side on which the group changes within a factor `NEAR` of a tolerance."""
-    here = crystal.symmetry
+    """Return one line for each side on which the group changes within a factor `NEAR`, and for a broken supercell."""
     warnings = []
-    for step in crystal.ladder:
-        side = step.symprec / symprec
-        if step.number in (here.number, 0) or not 1 / (NEAR * 1.01) <= side <= NEAR * 1.01:
-            continue
+    if not crystal.symmetry.cell_keeps_class:
         warnings.append(
-            f"the group depends on the tolerance: {here.international} ({here.number}) at symprec {symprec:g}, "
-            f"but {step.international} ({step.number}), class {step.point_group}, at {step.symprec:g}"
+            "the cell is a supercell whose shape breaks the class: the group given is that of the crystal itself"
         )
+    for other in (symprec / NEAR, symprec * NEAR):
+        found = _symmetry_or_none(crystal, other)
+        if found is None or found.number == crystal.symmetry.number:
+            continue
+        line = (
+            f"at symprec {other:g} the space group is {found.international} ({found.number}), class "
+            f"{found.group.hermann_mauguin}, not {crystal.symmetry.international} ({crystal.symmetry.number})"
+        )
+        higher, at = (found, other) if other > symprec else (crystal.symmetry, symprec)
+        warnings.append(f"{line}; {_movers_in_words(crystal, higher, at)}")
     return tuple(warnings)
+
+
+def displacements_to(crystal: Crystal, symmetry: CrystalSymmetry) -> NDArray[np.float64]:
+    """Return how far each atom has to move to sit exactly where a group wants it.
+
+    Every atom goes to the mean of the places at which the operations of the group arrive; the cell is left as it is.
+
+    Returns
+    -------
+    ndarray of shape (atoms, 3)
+        Displacements in Å, in the file's axes.
+    """
+    _, misses = atom_images_and_misses(crystal, symmetry)
+    return np.asarray(misses.mean(axis=0))
+
+
+def _symmetry_or_none(crystal: Crystal, symprec: float) -> CrystalSymmetry | None:
+    try:
+        return symmetry_of(crystal, symprec)
+    except StructureError:
+        return None
+
+
+def _movers_in_words(crystal: Crystal, symmetry: CrystalSymmetry, symprec: float) -> str:
+    try:
+        distances = np.linalg.norm(displacements_to(crystal, symmetry), axis=1)
+    except StructureError:
+        return f"no atom alone decides what is equal within {symprec:g} Å"
+    largest = float(distances.max())
+    if largest < symprec * 1e-3:
+        return "the shape of the cell decides, not the atoms"
+    worst = [index for index in np.argsort(-distances, kind="stable") if distances[index] > 0.5 * largest]
+    named = ", ".join(f"{crystal.species[index]} (atom {index + 1})" for index in worst[:MOST_NAMED])
+    more = f" and {len(worst) - MOST_NAMED} more" if len(worst) > MOST_NAMED else ""
+    return f"farthest from {symmetry.international}: {named}{more}, by up to {largest:.2g} Å"

@@ -1,93 +1,122 @@
-"""Inequivalent sites, their groups, and how operations carry atoms to one another."""
+"""The inequivalent sites of a crystal, each with its own group and where the elements of that group lie."""
 
 from __future__ import annotations
 
+from collections import Counter
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.errors import StructureError
-from tensorsym.groups.recognition import class_of_rotations
+from tensorsym.crystal.frame import placed_group
+from tensorsym.crystal.images import SLACK, atom_images
+from tensorsym.errors import GroupSymbolError, StructureError
+from tensorsym.groups.placement import elements_in_words
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from tensorsym.crystal.crystal import Crystal
+    from tensorsym.groups.point_group import PointGroup
+
+__all__ = ["Site", "atom_images", "site_rotations", "sites_of"]
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Site:
-    """One set of equivalent atoms."""
+    """One set of equivalent atoms, seen from its first atom."""
 
     label: str
-    """Species and running number, such as ``O2``."""
+    """Species and running number among the sites of that species, such as ``O2``."""
     species: str
-    """Species of the atoms."""
+    """What sits there."""
     atoms: tuple[int, ...]
-    """Numbers of the atoms, counted from 0, the first one representing the site."""
+    """Numbers of the equivalent atoms in the file's cell, counted from 0; all else here is said of the first."""
+    position: NDArray[np.float64]
+    """Shape (3,), read-only: fractional coordinates in the file's cell."""
     wyckoff: str
-    """Wyckoff letter with the multiplicity in the cell of the file, such as ``6c``."""
+    """Wyckoff position in the standard setting, such as ``6c``: multiplicity in the conventional cell, and letter."""
     oriented_symbol: str
-    """Oriented site-symmetry symbol of the International Tables."""
-    site_group: str
-    """Short Hermann-Mauguin symbol of the site's class."""
-    operations: tuple[int, ...]
-    """Numbers of the space-group operations that leave the first atom in place."""
+    """Oriented site-symmetry symbol in the standard setting, such as ``.2.``."""
+    group: PointGroup
+    """The class of the site's group in its standard setting."""
+    frame: NDArray[np.float64]
+    """Shape (3, 3), read-only: rows are unit x, y, z of that standard frame in the file's Cartesian axes."""
+    rotations: NDArray[np.intc]
+    """Shape (order, 3, 3), read-only: the operations that leave the site alone, in the cell of the operations."""
+
+    def __repr__(self) -> str:
+        """Return label, Wyckoff position and symmetry."""
+        return f"Site({self.label}, {self.wyckoff}, {self.oriented_symbol}, {self.group.hermann_mauguin})"
+
+    @property
+    def site_group(self) -> str:
+        """Short Hermann-Mauguin symbol of the site's class."""
+        return self.group.hermann_mauguin
+
+    @property
+    def elements_in_words(self) -> str:
+        """Where the elements of the site's group lie in the file's Cartesian axes."""
+        return elements_in_words(self.group, tuple(map(tuple, self.frame.T.tolist())))
 
 
 def sites_of(crystal: Crystal) -> tuple[Site, ...]:
-    """Return the inequivalent sites in the order of their first atoms."""
-    symmetry = crystal.symmetry
-    images = atom_images(crystal)
-    equivalent = np.array(symmetry.equivalent_atoms)
-    counts: dict[str, int] = {}
-    sites = []
-    for first in dict.fromkeys(equivalent.tolist()):
-        species = crystal.species[first]
-        counts[species] = counts.get(species, 0) + 1
-        atoms = tuple(int(index) for index in np.flatnonzero(equivalent == first))
-        keeping = np.flatnonzero(images[:, first] == first)
-        matrices = frozenset(tuple(map(tuple, matrix)) for matrix in symmetry.rotations[keeping].tolist())
-        sites.append(
-            Site(
-                f"{species}{counts[species]}",
-                species,
-                atoms,
-                f"{len(atoms)}{symmetry.wyckoffs[first]}",
-                symmetry.site_symmetry_symbols[first],
-                class_of_rotations(matrices),
-                tuple(int(index) for index in keeping),
-            )
-        )
-    return tuple(sites)
-
-
-def atom_images(crystal: Crystal) -> NDArray[np.intp]:
-    """Return where every operation carries every atom, shape (operations, atoms).
+    """Return the inequivalent sites in the order of the file.
 
     Raises
     ------
     StructureError
-        If an operation carries an atom to no atom of its species within a few times the tolerance.
+        If the symmetry cannot be found.
+
+    Examples
+    --------
+    >>> from tensorsym.crystal.crystal import Crystal
+    >>> sites_of(Crystal(4.12 * np.eye(3), np.array([[0, 0, 0], [0.5, 0.5, 0.5]]), ("Cs", "Cl")))
+    (Site(Cs1, 1a, m-3m, m-3m), Site(Cl1, 1b, m-3m, m-3m))
+    """
+    counts: Counter[str] = Counter()
+    sites = []
+    for first in np.unique(crystal.symmetry.equivalent_atoms).tolist():
+        counts[crystal.species[first]] += 1
+        sites.append(_site(crystal, first, counts[crystal.species[first]]))
+    return tuple(sites)
+
+
+def site_rotations(crystal: Crystal, atom: int) -> NDArray[np.intc]:
+    """Return the rotations that leave an atom where it is, modulo the lattice of the operations' cell.
+
+    Returns
+    -------
+    ndarray of int, shape (order, 3, 3), read-only
     """
     symmetry = crystal.symmetry
-    if not symmetry.is_of_file_cell:
-        msg = "the cell is a supercell whose shape breaks the class, so its atoms cannot be followed one by one"
-        raise StructureError(msg, where=crystal.source or None, hint="give the primitive or the conventional cell")
-    positions, numbers = crystal.positions, np.array(crystal.numbers)
-    images = np.empty((len(symmetry.rotations), len(positions)), dtype=np.intp)
-    for number in np.unique(numbers):
-        members = np.flatnonzero(numbers == number)
-        moved = positions[members] @ symmetry.rotations.transpose(0, 2, 1) + symmetry.translations[:, None]
-        difference = moved[:, :, None] - positions[members][None, None]
-        difference -= np.rint(difference)
-        distance = np.linalg.norm(difference @ crystal.lattice, axis=3)
-        images[:, members] = members[np.argmin(distance, axis=2)]
-        worst = float(distance.min(axis=2).max())
-        if worst > 10 * symmetry.symprec:
-            msg = (
-                f"an operation carries a {crystal.species[members[0]]} atom {worst:.3g} angstrom beside the nearest one"
-            )
-            raise StructureError(msg, where=crystal.source or None, hint="try another --symprec")
-    return images
+    place = crystal.positions[atom] @ crystal.lattice @ np.linalg.inv(symmetry.cell)
+    apart = symmetry.rotations @ place + symmetry.translations - place
+    apart -= np.rint(apart)
+    stays = np.linalg.norm(apart @ symmetry.cell, axis=1) <= SLACK * symmetry.symprec
+    rotations = np.ascontiguousarray(np.unique(symmetry.rotations[stays], axis=0))
+    rotations.setflags(write=False)
+    return rotations
+
+
+def _site(crystal: Crystal, first: int, number: int) -> Site:
+    symmetry = crystal.symmetry
+    atoms = np.flatnonzero(symmetry.equivalent_atoms == first)
+    conventional = len(atoms) * abs(np.linalg.det(symmetry.standard_cell) / np.linalg.det(crystal.lattice))
+    rotations = site_rotations(crystal, first)
+    try:
+        placed = placed_group(rotations, symmetry.cell)
+    except GroupSymbolError as error:
+        msg = f"the operations that leave atom {first + 1} alone form no group at symprec {symmetry.symprec:g}"
+        raise StructureError(msg, where=crystal.source or None, hint="use a smaller symprec") from error
+    return Site(
+        f"{crystal.species[first]}{number}",
+        crystal.species[first],
+        tuple(atoms.tolist()),
+        crystal.positions[first],
+        f"{round(conventional)}{symmetry.wyckoffs[first]}",
+        symmetry.site_symmetry_symbols[first],
+        placed.group,
+        placed.frame,
+        rotations,
+    )

@@ -1,22 +1,21 @@
-"""Space group, class and standard frame of a crystal. The only caller of spglib's search."""
+"""Space group, class and standard frame of a crystal: the only caller of spglib's search."""
 
 from __future__ import annotations
 
-import os
-import threading
-from contextlib import contextmanager
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, NoReturn
+from functools import lru_cache
+from inspect import signature
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
 from tensorsym.crystal.frame import PlacedGroup, placed_group
 from tensorsym.errors import GroupSymbolError, StructureError
+from tensorsym.groups.symbols import point_group_of_space_group
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
-
     from numpy.typing import NDArray
+    from spglib import SpglibDataset
 
     from tensorsym.crystal.crystal import Crystal
     from tensorsym.groups.point_group import PointGroup
@@ -36,10 +35,12 @@ class CrystalSymmetry:
     """The class in its standard setting."""
     frame: NDArray[np.float64]
     """Shape (3, 3), read-only: rows are unit x, y, z of the standard frame in the file's Cartesian axes."""
+    file_cell: NDArray[np.float64]
+    """Shape (3, 3), read-only: rows are the lattice vectors of the file, in Å and its axes."""
     cell: NDArray[np.float64]
     """Shape (3, 3), read-only: rows are the lattice vectors, in Å and the file's axes, that the operations refer to.
 
-    The file's own cell, unless that is a supercell whose shape breaks the class: then the standard cell.
+    That is `file_cell`, unless it is a supercell whose shape breaks the class: then the standard cell.
     """
     rotations: NDArray[np.intc]
     """Shape (n, 3, 3), read-only: ``x' = W x + w`` on columns of fractional coordinates of `cell`."""
@@ -51,10 +52,12 @@ class CrystalSymmetry:
     """Oriented site-symmetry symbol of each atom, in the standard setting of the space group."""
     equivalent_atoms: NDArray[np.intc]
     """Shape (atoms,), read-only: the first atom that each is equivalent to, counted from 0."""
-    standard_cell: NDArray[np.float64]
-    """Shape (3, 3), read-only: rows are the conventional cell of the standard setting, in Å and the file's axes."""
+    to_standard: NDArray[np.float64]
+    """Shape (3, 3), read-only: P of spglib, ``(a b c)_file = (a b c)_standard P``, not idealised."""
     symprec: float
     """Å. Atoms within this distance of their image count as equivalent."""
+    cell_keeps_class: bool = True
+    """False when the file's cell is a supercell whose shape breaks the class: then `cell` is `standard_cell`."""
 
     def __repr__(self) -> str:
         """Return space group, class and tolerance."""
@@ -63,18 +66,17 @@ class CrystalSymmetry:
             f"symprec {self.symprec:g})"
         )
 
-    def cartesian_rotations(self) -> NDArray[np.float64]:
-        """Return the rotations as orthogonal matrices in the file's Cartesian axes, shape (n, 3, 3), exact to rounding."""
-        standard = np.array([operation.cartesian() for operation in self.group.operations])
-        ideal = self.frame.T @ standard @ self.frame
-        rough = self.cell.T @ self.rotations @ np.linalg.inv(self.cell.T)
-        nearest = np.argmax(np.einsum("nij,mij->nm", rough, ideal), axis=1)
-        return np.asarray(ideal[nearest])
-
     @property
-    def is_of_file_cell(self) -> bool:
-        """False when the file's cell is a supercell whose shape breaks the class of the crystal."""
-        return self.cell is not self.standard_cell
+    def standard_cell(self) -> NDArray[np.float64]:
+        """Shape (3, 3): rows are the conventional cell of the standard setting, in Å and the file's axes."""
+        return _standard_cell(self.file_cell, self.to_standard)
+
+    def cartesian_rotations(self) -> NDArray[np.float64]:
+        """Return the rotations in the file's Cartesian axes, orthogonal to rounding, shape (n, 3, 3)."""
+        standard = np.array([operation.cartesian() for operation in self.group.operations])
+        exact = self.frame.T @ standard @ self.frame
+        rough = self.cell.T @ self.rotations @ np.linalg.inv(self.cell.T)
+        return np.asarray(exact[np.argmax(np.einsum("nij,mij->nm", rough, exact), axis=1)])
 
 
 def symmetry_of(crystal: Crystal, symprec: float) -> CrystalSymmetry:
@@ -90,60 +92,38 @@ def symmetry_of(crystal: Crystal, symprec: float) -> CrystalSymmetry:
     Raises
     ------
     StructureError
-        If spglib finds no symmetry; the message tells its reason.
+        If no symmetry is found; the message tells spglib's reason.
     """
-    found = _dataset(crystal, symprec)
-    lattice = crystal.lattice
-    standard = np.linalg.solve(found.transformation_matrix.T, lattice)
+    lattice, where = crystal.lattice, crystal.source or None
+    found = _search(lattice, crystal.positions, crystal.numbers, symprec, where)
     rotations, translations, cell = found.rotations, found.translations, lattice
     placed = _placed(rotations, cell)
-    if placed is None or placed.group.hermann_mauguin != found.pointgroup.strip():
-        cell = standard
-        rotations, translations = _operations_of_setting(found)
-        placed = _placed(rotations, cell) or _refuse(crystal, found.pointgroup)
-    for array in (rotations, translations, found.equivalent_atoms, standard):
+    keeps_class = placed is not None and placed.group.hermann_mauguin == _class_of(found.number)
+    if not keeps_class:
+        cell = _standard_cell(lattice, found.transformation_matrix)
+        rotations, translations = _standard_operations(found, symprec, where)
+        placed = _placed(rotations, cell)
+    if placed is None:
+        msg = f"the operations found at symprec {symprec:g} do not form the class of {found.international}"
+        raise StructureError(msg, where=where, hint="use a smaller symprec")
+    for array in (rotations, translations, found.crystallographic_orbits, found.transformation_matrix):
         array.setflags(write=False)
     return CrystalSymmetry(
-        found.number, found.international, found.hall_number, placed.group, placed.frame, cell, rotations,
-        translations, tuple(found.wyckoffs), tuple(found.site_symmetry_symbols), found.equivalent_atoms, standard,
-        symprec,
+        found.number, found.international, found.hall_number, placed.group, placed.frame, lattice, cell, rotations,
+        translations, tuple(found.wyckoffs), tuple(found.site_symmetry_symbols), found.crystallographic_orbits,
+        found.transformation_matrix, symprec, keeps_class,
     )  # fmt: skip
 
 
-def _dataset(crystal: Crystal, symprec: float) -> Any:
-    """Return spglib's data set, or its reason for having none."""
-    import spglib
-
-    where = crystal.source or None
-    with _reasons_kept():
-        try:
-            found = spglib.get_symmetry_dataset((crystal.lattice, crystal.positions, crystal.numbers), symprec=symprec)
-        except Exception as error:  # spglib's own type of error, whose place differs between versions
-            msg = f"no symmetry found at symprec {symprec:g}: {error}"
-            raise StructureError(msg, where=where, hint="try another symprec") from error
-    if found is None:
-        msg = f"no symmetry found at symprec {symprec:g}"
-        raise StructureError(msg, where=where, hint="try another symprec, check for overlapping atoms")
-    return found
+def _standard_cell(lattice: NDArray[np.float64], to_standard: NDArray[np.float64]) -> NDArray[np.float64]:
+    standard = np.asarray(np.linalg.solve(to_standard.T, lattice), dtype=np.float64)
+    standard.setflags(write=False)
+    return standard
 
 
-_SWITCH = "SPGLIB_OLD_ERROR_HANDLING"
-_LOCK = threading.Lock()
-
-
-@contextmanager
-def _reasons_kept() -> Iterator[None]:
-    """Make spglib raise its reason; its default returns None and loses it. Other threads wait meanwhile."""
-    with _LOCK:
-        before = os.environ.get(_SWITCH)
-        os.environ[_SWITCH] = "0"
-        try:
-            yield
-        finally:
-            if before is None:
-                del os.environ[_SWITCH]
-            else:
-                os.environ[_SWITCH] = before
+@lru_cache(maxsize=230)
+def _class_of(number: int) -> str:
+    return point_group_of_space_group(number).hermann_mauguin
 
 
 def _placed(rotations: NDArray[np.intc], cell: NDArray[np.float64]) -> PlacedGroup | None:
@@ -153,14 +133,42 @@ def _placed(rotations: NDArray[np.intc], cell: NDArray[np.float64]) -> PlacedGro
         return None
 
 
-def _operations_of_setting(found: Any) -> tuple[NDArray[np.intc], NDArray[np.float64]]:
-    """Return the operations of the standard setting from spglib's table."""
+def _standard_operations(
+    found: SpglibDataset, symprec: float, where: str | None
+) -> tuple[NDArray[np.intc], NDArray[np.float64]]:
+    """Return the operations in the standard cell with the file's origin, for a file whose cell breaks the class."""
+    again = _search(found.std_lattice, found.std_positions, found.std_types, symprec, where)
+    shift = found.origin_shift
+    return again.rotations, again.translations + again.rotations @ shift - shift
+
+
+def _search(
+    lattice: NDArray[np.float64],
+    positions: NDArray[np.float64],
+    numbers: NDArray[np.intc],
+    symprec: float,
+    where: str | None,
+) -> SpglibDataset:
+    """Return what spglib finds, or its reason for failing as an error of ours."""
     import spglib
 
-    table = spglib.get_symmetry_from_database(found.hall_number)
-    return table["rotations"], table["translations"]
+    failure = getattr(spglib, "SpglibError", RuntimeError)
+    reason = ""
+    found = None
+    cell: Any = (lattice, positions, numbers)
+    try:
+        found = spglib.get_symmetry_dataset(cell, symprec=symprec, **_asks_for_reason())
+    except failure as error:
+        reason = str(error)
+    if found is None:
+        msg = f"no symmetry found at symprec {symprec:g}: {reason or 'spglib gives no reason'}"
+        raise StructureError(msg, where=where, hint="try another symprec, and look for atoms that are too close")
+    return found
 
 
-def _refuse(crystal: Crystal, point_group: str) -> NoReturn:
-    msg = f"the operations found form no group of class {point_group}"
-    raise StructureError(msg, where=crystal.source or None, hint="try another symprec")
+@lru_cache(maxsize=1)
+def _asks_for_reason() -> dict[str, Any]:
+    """Return the option by which one call of spglib 2.7 and 2.8 raises its reason; later versions always do."""
+    import spglib
+
+    return {"_throw": True} if "_throw" in signature(spglib.get_symmetry_dataset).parameters else {}

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -94,7 +94,7 @@ def refuse_overlaps(
     )
 
 
-def checked_symprec(symprec: float) -> float:
+def checked_symprec(symprec: Any) -> float:
     """Return a tolerance in Å.
 
     Raises
