@@ -24,7 +24,7 @@ def orthonormal_basis(group: PointGroup, kind: TensorKind) -> NDArray[np.float64
     import numpy as np
 
     space = invariant_space(group, kind)
-    rows = space.basis().reshape(space.dimension, -1)
+    rows = space.basis().reshape(space.dimension, 3**kind.rank)
     basis = np.ascontiguousarray(np.linalg.qr(rows.T)[0].T) if space.dimension else rows
     basis.setflags(write=False)
     return basis

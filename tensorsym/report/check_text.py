@@ -38,7 +38,7 @@ def verdict_text(verdict: TensorVerdict | SiteVerdict) -> str:
     name = f"{verdict.row.name}, {verdict.label}" if verdict.label else verdict.row.name
     lines = [
         f"{name}     {WORDS[verdict.verdict]}",
-        f"    residual {residual(verdict.residual)}, size {short(verdict.size)} {verdict.unit}, "
+        f"    residual {residual(verdict.residual)}, size {_sized(verdict.size, verdict.unit)}, "
         f"threshold {residual(verdict.threshold.relative)} ({verdict.threshold.source})",
     ]
     if verdict.verdict == "inconsistent":
@@ -54,10 +54,14 @@ def _offence(offence: Offence, unit: str) -> str:
     return paragraph(
         f"    {offence.component} = {short(offence.value)}",
         [
-            f"{rule}: allowed {short(offence.allowed_value)} {unit}",
+            f"{rule}: allowed {_sized(offence.allowed_value, unit)}",
             f"changed by {short(offence.change)} under {offence.operation}",
         ],
     )
+
+
+def _sized(value: float, unit: str) -> str:
+    return short(value) if unit in ("", "1") else f"{short(value)} {unit}"
 
 
 def _summary(report: CheckReport) -> str:

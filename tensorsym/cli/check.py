@@ -1,0 +1,71 @@
+"""``tensorsym check``."""
+
+from __future__ import annotations
+
+import json
+import sys
+
+import click
+
+from tensorsym.cli.options import SYMPREC, format_option
+
+
+@click.command("check")
+@click.argument("file")
+@click.argument("tensorfile", required=False)
+@click.option("--property", "property_name", metavar="NAME", help="Property of a bare matrix; check only this one.")
+@click.option("--order", metavar="PAIRS", help="Order of index pairs of a bare matrix, such as 'xx yy zz xy yz zx'.")
+@click.option("--axes", metavar="AXES", help="Axes of the numbers: file, ieee, international, or 'x=[110] z=(001)'.")
+@click.option("--unit", metavar="UNIT", help="Unit of a bare matrix.")
+@click.option("--sigma", type=click.FloatRange(min=0.0, min_open=True), metavar="NUMBER", help="Standard deviation.")
+@click.option(
+    "--tolerance", type=click.FloatRange(min=0.0, min_open=True), metavar="NUMBER", help="Relative residual to accept."
+)
+@click.option(
+    "--write", "target", type=click.Path(dir_okay=False), metavar="PATH", help="Save symmetrised tensors here."
+)
+@click.option("--force", is_flag=True, help="Let --write replace a file.")
+@SYMPREC
+@format_option("text", "json")
+def command(
+    file: str,
+    tensorfile: str | None,
+    property_name: str | None,
+    order: str | None,
+    axes: str | None,
+    unit: str | None,
+    sigma: float | None,
+    tolerance: float | None,
+    target: str | None,
+    force: bool,  # noqa: FBT001  click passes options by name
+    symprec: float,
+    style: str,
+) -> None:
+    """Hold the tensors in FILE, or in TENSORFILE for the structure FILE, against the crystal's symmetry.
+
+    FILE alone is an output of a calculation with structure and tensors. TENSORFILE is a tensor file in JSON, or a bare
+    matrix of numbers with --property and --order.
+
+    \b
+    tensorsym check OUTCAR
+    tensorsym check POSCAR d.txt --property piezoelectric --order "xx yy zz xy yz zx"
+    """
+    from tensorsym.tasks.check_file import check_file
+
+    report = check_file(
+        file, tensorfile, property=property_name, order=order, axes=axes, unit=unit, sigma=sigma, tolerance=tolerance,
+        symprec=symprec,
+    )  # fmt: skip
+    if target:
+        from tensorsym.tasks.mend import write_symmetrised
+
+        write_symmetrised(report, target, force=force)
+    if style == "json":
+        from tensorsym.report.check_json import check_document
+
+        click.echo(json.dumps(check_document(report), indent=1))
+    else:
+        from tensorsym.report.check_text import check_text
+
+        click.echo(check_text(report))
+    sys.exit(0 if report.verdict == "consistent" else 1)
