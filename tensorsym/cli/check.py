@@ -53,9 +53,16 @@ def command(
     from tensorsym.tasks.check_file import check_file
 
     report = check_file(
-        file, tensorfile, property=property_name, order=order, axes=axes, unit=unit, sigma=sigma, tolerance=tolerance,
+        file,
+        tensorfile,
+        property=property_name,
+        order=order,
+        axes=axes,
+        unit=unit,
+        sigma=sigma,
+        tolerance=tolerance,
         symprec=symprec,
-    )  # fmt: skip
+    )
     if target:
         from tensorsym.tasks.mend import write_symmetrised
 

@@ -2,7 +2,14 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING, Any, TypeVar
+
 import click
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+F = TypeVar("F", bound="Callable[..., Any]")
 
 SYMPREC = click.option(
     "--symprec",
@@ -20,7 +27,7 @@ AXES = click.option(
 )
 
 
-def format_option(*choices: str) -> object:
+def format_option(*choices: str) -> Callable[[F], F]:
     """Return the option ``--format``, the first choice being the default."""
     return click.option(
         "--format",

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Sequence
 
     from tensorsym.groups.operations import Operation
     from tensorsym.groups.point_group import PointGroup
@@ -17,7 +17,7 @@ _SHARP = 1e-3
 _LARGEST_INDEX = 4
 
 
-def element_in_words(element: Operation, turn: Rows | None = None) -> str:
+def element_in_words(element: Operation, turn: Rows | None = None, namer: Callable[..., str] | None = None) -> str:
     """Return an element with its direction, such as ``2 along x`` or ``m perpendicular to (1,1,0)``.
 
     Parameters
@@ -26,6 +26,8 @@ def element_in_words(element: Operation, turn: Rows | None = None) -> str:
         An operation in the standard frame.
     turn : 3 rows of 3 numbers, optional
         Unit vectors of the axes in the standard frame; None for the standard frame itself.
+    namer : callable, optional
+        Names a direction of the standard frame that is none of these axes.
 
     Examples
     --------
@@ -36,21 +38,21 @@ def element_in_words(element: Operation, turn: Rows | None = None) -> str:
     direction = element.cartesian_direction()
     if direction is None:
         return "the centre of inversion" if element.symbol == "-1" else "no element"
-    if turn is not None:
-        where = direction_in_axes([sum(row[k] * direction[k] for k in range(3)) for row in turn])
-    else:
-        where = direction_in_axes(direction)
+    placed = direction if turn is None else [sum(row[k] * direction[k] for k in range(3)) for row in turn]
+    where = direction_in_axes(placed)
+    if namer is not None and where not in ("x", "y", "z"):
+        where = namer(direction)
     return f"m perpendicular to {where}" if element.symbol == "m" else f"{element.symbol} along {where}"
 
 
-def elements_in_words(group: PointGroup, turn: Rows | None = None) -> str:
+def elements_in_words(group: PointGroup, turn: Rows | None = None, namer: Callable[..., str] | None = None) -> str:
     """Return where all elements of the group's symbol lie.
 
     >>> from tensorsym.groups.symbols import point_group_named
     >>> elements_in_words(point_group_named("32"))
     '3 along z, 2 along x'
     """
-    return ", ".join(element_in_words(element, turn) for element in group.elements) or "no element"
+    return ", ".join(element_in_words(element, turn, namer) for element in group.elements) or "no element"
 
 
 def direction_in_axes(direction: Sequence[float]) -> str:
@@ -70,4 +72,4 @@ def direction_in_axes(direction: Sequence[float]) -> str:
                 break
             axes = {"1,0,0": "x", "0,1,0": "y", "0,0,1": "z"}
             return axes.get(",".join(map(str, whole)), "(" + ",".join(map(str, whole)) + ")")
-    return "(" + ", ".join(f"{sense * component:.4f}" for component in direction) + ")"
+    return "(" + ", ".join(f"{sense * component + 0.0:.3f}" for component in direction) + ")"

@@ -56,16 +56,24 @@ def read_bare_matrix(
             msg, expected="the name of its property", hint="--property NAME, and --order for matrix notation"
         )
     row = property_named(property)
-    words = [(number, word) for number, line in enumerate(text.splitlines(), 1)
-             for word in line.split("#")[0].replace(",", " ").split()]  # fmt: skip
+    words = [
+        (number, word)
+        for number, line in enumerate(text.splitlines(), 1)
+        for word in line.split("#")[0].replace(",", " ").split()
+    ]
     values = np.array([_number(word, number, source) for number, word in words])
     tensor, per_site = _shaped(values, row, order or VOIGT_ORDER, atoms, source)
     return (
         TensorRecord(
-            row.name, "", tensor, unit or row.unit, order=order or VOIGT_ORDER, digits=_last_place([w for _, w in words]),
+            row.name,
+            "",
+            tensor,
+            unit or row.unit,
+            order=order or VOIGT_ORDER,
+            digits=_last_place([w for _, w in words]),
             per_site=per_site,
         ),
-    )  # fmt: skip
+    )
 
 
 def _number(word: str, number: int, source: str) -> float:

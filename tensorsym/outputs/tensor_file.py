@@ -80,12 +80,19 @@ def _record(document: Any, source: str) -> TensorRecord:
         spread = None if sigma is None else _sigma(sigma, row, str(notation), str(order), source)
         axes = _axes(document.get("axes", "file"))
     except TensorsymError as error:
-        raise TensorFileError(error.message, where=error.where or source, expected=error.expected, nearest=error.nearest,
-                              hint=error.hint) from error  # fmt: skip
+        raise TensorFileError(
+            error.message, where=error.where or source, expected=error.expected, nearest=error.nearest, hint=error.hint
+        ) from error
     return TensorRecord(
-        row.name, str(document.get("label", "")), values, str(document.get("unit", row.unit)), axes=axes,
-        order=str(order) if notation == "voigt" else "", digits=_last_place(document["values"]), sigma=spread,
-    )  # fmt: skip
+        row.name,
+        str(document.get("label", "")),
+        values,
+        str(document.get("unit", row.unit)),
+        axes=axes,
+        order=str(order) if notation == "voigt" else "",
+        digits=_last_place(document["values"]),
+        sigma=spread,
+    )
 
 
 def _tensor(values: Any, row: Property, notation: str, order: str, source: str) -> NDArray[np.float64]:
@@ -151,8 +158,8 @@ def _last_place(node: Any) -> float | None:
     return 10.0 ** max(exponents) if exponents else None
 
 
-def tensor_document(record: TensorRecord, **more: Any) -> dict[str, Any]:
-    """Return the document of a tensor, in full notation."""
+def tensor_document(record: TensorRecord, done: dict[str, Any] | None = None) -> dict[str, Any]:
+    """Return the document of a tensor, in full notation, with a record of what was done to it."""
     document: dict[str, Any] = {
         "schema": SCHEMA,
         "property": record.property,
@@ -163,7 +170,7 @@ def tensor_document(record: TensorRecord, **more: Any) -> dict[str, Any]:
     }
     if record.label:
         document["label"] = record.label
-    return document | more
+    return document | {"record": done} if done else document
 
 
 def write_document(document: Any, path: str | PathLike[str], *, force: bool = False) -> None:
@@ -178,7 +185,7 @@ def write_document(document: Any, path: str | PathLike[str], *, force: bool = Fa
     if target.exists() and not force:
         raise TensorFileError("exists already", where=str(path), hint="--force replaces it")
     try:
-        handle, name = tempfile.mkstemp(dir=target.parent or Path(), prefix=f".{target.name}.", suffix=".tmp")
+        handle, name = tempfile.mkstemp(dir=target.parent, prefix=f".{target.name}.", suffix=".tmp")
         try:
             with os.fdopen(handle, "w", encoding="utf-8") as stream:
                 json.dump(document, stream, indent=1)

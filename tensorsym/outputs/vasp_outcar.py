@@ -10,13 +10,11 @@ import numpy as np
 
 from tensorsym.catalog.properties import property_named
 from tensorsym.crystal.formats_vasp import read_outcar
-from tensorsym.errors import OutputFileError, StructureError
+from tensorsym.errors import OutputFileError
 from tensorsym.outputs.record import OutputFile, TensorRecord
 from tensorsym.tensors.notation import from_matrix
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
-
     from numpy.typing import NDArray
 
 ORDER = "11 22 33 12 23 13"
@@ -27,9 +25,9 @@ ELEMENTARY = 16.02176634
 
 
 class Table(NamedTuple):
-    """One kind of table: how it begins, how many rows and columns, what it holds."""
+    """One kind of table: how its heading begins, how many rows and columns, what it holds."""
 
-    heading: re.Pattern[str]
+    heading: str
     rows: int
     columns: int
     property: str
@@ -37,19 +35,19 @@ class Table(NamedTuple):
     unit: str
 
 
+_CLAMPED, _IONIC, _RAW = "electronic, clamped ion", "ionic contribution", "before the code symmetrised it"
 _TABLES = (
-    Table(re.compile(r"MACROSCOPIC STATIC DIELECTRIC TENSOR IONIC"), 3, 3, "dielectric", "ionic contribution", "1"),
-    Table(re.compile(r"MACROSCOPIC STATIC DIELECTRIC TENSOR"), 3, 3, "dielectric", "electronic, clamped ion", "1"),
-    Table(re.compile(r"PIEZOELECTRIC TENSOR IONIC CONTR.*C/m"), 3, 6, "piezoelectric-stress", "ionic contribution", "C/m^2"),
-    Table(re.compile(r"PIEZOELECTRIC TENSOR +.*for field.*e +Angst"), 3, 6, "piezoelectric-stress",
-          "electronic, clamped ion, before the code symmetrised it", "e angstrom"),
-    Table(re.compile(r"PIEZOELECTRIC TENSOR +.*for field.*C/m"), 3, 6, "piezoelectric-stress",
-          "electronic, clamped ion", "C/m^2"),
-    Table(re.compile(r"SYMMETRIZED ELASTIC MODULI"), 6, 6, "elastic-stiffness", "clamped ion, symmetrised by the code", "kbar"),
-    Table(re.compile(r"ELASTIC MODULI (?:IONIC CONTR|CONTR FROM IONIC)"), 6, 6, "elastic-stiffness", "ionic contribution", "kbar"),
-    Table(re.compile(r"TOTAL ELASTIC MODULI"), 6, 6, "elastic-stiffness", "total, relaxed ion", "kbar"),
-    Table(re.compile(r"^ *ELASTIC MODULI"), 6, 6, "elastic-stiffness", "clamped ion, before the code symmetrised it", "kbar"),
-)  # fmt: skip
+    Table(r"MACROSCOPIC STATIC DIELECTRIC TENSOR IONIC", 3, 3, "dielectric", _IONIC, "1"),
+    Table(r"MACROSCOPIC STATIC DIELECTRIC TENSOR", 3, 3, "dielectric", _CLAMPED, "1"),
+    Table(r"PIEZOELECTRIC TENSOR IONIC CONTR.*C/m", 3, 6, "piezoelectric-stress", _IONIC, "C/m^2"),
+    Table(r"PIEZOELECTRIC TENSOR +for.*e +Angst", 3, 6, "piezoelectric-stress", f"{_CLAMPED}, {_RAW}", "e angstrom"),
+    Table(r"PIEZOELECTRIC TENSOR +for.*C/m", 3, 6, "piezoelectric-stress", _CLAMPED, "C/m^2"),
+    Table(r"SYMMETRIZED ELASTIC MODULI", 6, 6, "elastic-stiffness", "clamped ion, symmetrised by the code", "kbar"),
+    Table(r"ELASTIC MODULI (?:IONIC CONTR|CONTR FROM IONIC)", 6, 6, "elastic-stiffness", _IONIC, "kbar"),
+    Table(r"TOTAL ELASTIC MODULI", 6, 6, "elastic-stiffness", "total, relaxed ion", "kbar"),
+    Table(r"^ *ELASTIC MODULI", 6, 6, "elastic-stiffness", f"clamped ion, {_RAW}", "kbar"),
+)
+"""Headings are tried in this order, so the longer of two that begin alike stands first."""
 
 _NUMBER = re.compile(r"[-+]?\d+\.\d*(?:[EeDd][-+]?\d+)?")
 _LONGEST_HEAD = 6
@@ -75,7 +73,7 @@ def read_vasp_outcar(text: str, source: str) -> OutputFile:
     found: dict[tuple[str, str, str], TensorRecord] = {}
     for number, line in enumerate(lines):
         if "TENSOR" in line or "MODULI" in line:
-            table = next((table for table in _TABLES if table.heading.search(line)), None)
+            table = next((table for table in _TABLES if re.search(table.heading, line)), None)
             if table is not None and "FIELD DIRECTION" not in line:
                 found[table.property, table.label, table.unit] = _tensor(lines, number, table, source)
         elif _BORN.search(line):
@@ -93,9 +91,14 @@ def _tensor(lines: list[str], number: int, table: Table, source: str) -> TensorR
     row = property_named(table.property)
     values = from_matrix(matrix, row.kind, row.factors, ORDER) if table.columns == 6 else matrix
     return TensorRecord(
-        table.property, table.label, values, table.unit, order=ORDER if table.columns == 6 else "",
-        digits=_last_place(rows), line=begin + 1,
-    )  # fmt: skip
+        table.property,
+        table.label,
+        values,
+        table.unit,
+        order=ORDER if table.columns == 6 else "",
+        digits=_last_place(rows),
+        line=begin + 1,
+    )
 
 
 def _rows(lines: list[str], start: int, count: int, columns: int, source: str) -> tuple[list[list[str]], int]:
@@ -134,9 +137,14 @@ def _born_charges(lines: list[str], number: int, atoms: int, source: str) -> Ten
         tensors.append([[float(word) for word in row] for row in rows])
         place += 3
     return TensorRecord(
-        "born-charge", "rows field, columns displacement", np.array(tensors), "e", digits=_last_place(rows_seen),
-        line=number + 2, per_site=True,
-    )  # fmt: skip
+        "born-charge",
+        "rows field, columns displacement",
+        np.array(tensors),
+        "e",
+        digits=_last_place(rows_seen),
+        line=number + 2,
+        per_site=True,
+    )
 
 
 def _gradients(lines: list[str], number: int, atoms: int, source: str) -> TensorRecord:
@@ -146,9 +154,15 @@ def _gradients(lines: list[str], number: int, atoms: int, source: str) -> Tensor
         xx, yy, zz, xy, xz, yz = (float(word) for word in row)
         tensors.append([[xx, xy, xz], [xy, yy, yz], [xz, yz, zz]])
     return TensorRecord(
-        "efg", "", np.array(tensors), "V/angstrom^2", order="11 22 33 12 13 23", digits=_last_place(rows), line=begin + 1,
+        "efg",
+        "",
+        np.array(tensors),
+        "V/angstrom^2",
+        order="11 22 33 12 13 23",
+        digits=_last_place(rows),
+        line=begin + 1,
         per_site=True,
-    )  # fmt: skip
+    )
 
 
 def _last_place(rows: list[list[str]]) -> float:
@@ -162,7 +176,7 @@ def _with_noise(found: dict[tuple[str, str, str], TensorRecord], volume: float) 
     from dataclasses import replace
 
     raw = next((record for record in found.values() if record.unit == "e angstrom"), None)
-    mended = found.get(("piezoelectric-stress", "electronic, clamped ion", "C/m^2"))
+    mended = found.get(("piezoelectric-stress", _CLAMPED, "C/m^2"))
     if raw is None or mended is None:
         return list(found.values())
     scale = ELEMENTARY / volume

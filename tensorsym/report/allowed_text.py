@@ -39,8 +39,8 @@ def _header(form: AllowedForm) -> str:
         symmetry = form.crystal.symmetry
         group = f"{form.crystal.title}   {symmetry.international} ({symmetry.number})   {group}"
     lines.append(group)
-    lines.append(f"axes: {form.axes_in_words}")
-    lines.append(f"      {form.elements_in_words}")
+    lines.append(paragraph("axes:", [form.axes_in_words]))
+    lines.append(paragraph("     ", [form.elements_in_words]))
     return "\n".join(lines)
 
 

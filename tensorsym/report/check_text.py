@@ -24,10 +24,12 @@ def check_text(report: CheckReport) -> str:
     symmetry = report.crystal.symmetry
     group = symmetry.group
     lines = [
-        f"{report.crystal.title}   {symmetry.international} ({symmetry.number})   "
-        f"class {group.hermann_mauguin} ({group.schoenflies}), order {group.order}",
-        f"axes: {report.axes.words}",
-        f"      {report.elements_in_words}",
+        (
+            f"{report.crystal.title}   {symmetry.international} ({symmetry.number})   "
+            f"class {group.hermann_mauguin} ({group.schoenflies}), order {group.order}"
+        ),
+        paragraph("axes:", [report.axes.words]),
+        paragraph("     ", [report.elements_in_words]),
     ]
     lines += [paragraph("Note:", [note]) for note in report.notes]
     return "\n\n".join(["\n".join(lines), *(verdict_text(verdict) for verdict in report.verdicts), _summary(report)])
@@ -38,8 +40,10 @@ def verdict_text(verdict: TensorVerdict | SiteVerdict) -> str:
     name = f"{verdict.row.name}, {verdict.label}" if verdict.label else verdict.row.name
     lines = [
         f"{name}     {WORDS[verdict.verdict]}",
-        f"    residual {residual(verdict.residual)}, size {_sized(verdict.size, verdict.unit)}, "
-        f"threshold {residual(verdict.threshold.relative)} ({verdict.threshold.source})",
+        (
+            f"    residual {residual(verdict.residual)}, size {_sized(verdict.size, verdict.unit)}, "
+            f"threshold {residual(verdict.threshold.relative)} ({verdict.threshold.source})"
+        ),
     ]
     if verdict.verdict == "inconsistent":
         lines += [_offence(offence, verdict.unit) for offence in verdict.worst]

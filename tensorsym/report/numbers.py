@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-
 ROUNDING = 1e-15
 """Relative deviations below this are rounding of the arithmetic."""
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from tensorsym.crystal.axes import axes_for
+from tensorsym.crystal.directions import direction_namer
 from tensorsym.groups.placement import elements_in_words
 from tensorsym.report.allowed_json import axes_document, group_document
 from tensorsym.report.tables import paragraph
@@ -18,10 +19,12 @@ def symmetry_text(crystal: Crystal) -> str:
     symmetry, group = crystal.symmetry, crystal.symmetry.group
     lines = [
         f"{crystal.title}   {len(crystal.species)} atoms   {crystal.format}",
-        f"space group {symmetry.international} ({symmetry.number})   class {group.hermann_mauguin} "
-        f"({group.schoenflies}), order {group.order}, {group.system}",
-        f"axes: {axes_for(crystal, 'file').words}",
-        f"      {_elements(crystal)}",
+        (
+            f"space group {symmetry.international} ({symmetry.number})   class {group.hermann_mauguin} "
+            f"({group.schoenflies}), order {group.order}, {group.system}"
+        ),
+        paragraph("axes:", [axes_for(crystal, "file").words]),
+        paragraph("     ", [_elements(crystal)]),
         "",
         "site        atoms  Wyckoff  site symmetry  class",
     ]
@@ -84,4 +87,4 @@ def symmetry_document(crystal: Crystal) -> dict[str, Any]:
 
 def _elements(crystal: Crystal) -> str:
     symmetry = crystal.symmetry
-    return elements_in_words(symmetry.group, tuple(map(tuple, symmetry.frame.T.tolist())))
+    return elements_in_words(symmetry.group, tuple(map(tuple, symmetry.frame.T.tolist())), direction_namer(crystal))

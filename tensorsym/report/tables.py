@@ -26,13 +26,9 @@ def paragraph(head: str, words: Iterable[str], separator: str = ", ") -> str:
     >>> paragraph("zero:", ["d11", "d12"])
     'zero: d11, d12'
     """
-    return textwrap.fill(
-        f"{head} {separator.join(words)}",
-        WIDTH,
-        subsequent_indent="    ",
-        break_long_words=False,
-        break_on_hyphens=False,
-    )
+    indent = " " * (len(head) - len(head.lstrip()) + 4)
+    text = f"{head} {separator.join(words)}"
+    return textwrap.fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
 
 
 def matrix_grids(kind: TensorKind, shape: Sequence[int], entry: Callable[[tuple[int, ...]], str]) -> list[str]:

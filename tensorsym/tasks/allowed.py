@@ -25,7 +25,7 @@ from tensorsym.tensors.notation import indices_of_entry
 from tensorsym.tensors.words import word_of
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Sequence
 
     import numpy as np
     from numpy.typing import NDArray
@@ -123,7 +123,16 @@ class AllowedForm:
     @property
     def elements_in_words(self) -> str:
         """Where the symmetry elements lie in these axes."""
-        return elements_in_words(self.group, self.space.turn)
+        return elements_in_words(self.group, self.space.turn, self._namer)
+
+    @property
+    def _namer(self) -> Callable[..., str] | None:
+        """What names directions by the crystal's lattice, when there is a crystal."""
+        if self.crystal is None:
+            return None
+        from tensorsym.crystal.directions import direction_namer
+
+        return direction_namer(self.crystal)
 
     @cached_property
     def reasons(self) -> dict[str, tuple[str, ...]]:
@@ -137,7 +146,9 @@ class AllowedForm:
             space = _placed(invariant_space(alone, self.kind), self.space.turn)
             because = [number for number in left if number not in space.expressions]
             if because:
-                found[element_in_words(element, self.space.turn)] = tuple(self.names[number] for number in because)
+                found[element_in_words(element, self.space.turn, self._namer)] = tuple(
+                    self.names[number] for number in because
+                )
             for number in because:
                 del left[number]
         if left:
@@ -163,7 +174,7 @@ class AllowedForm:
         words = self.space.components.words
         scale = [matrix_factor(self.kind, self.factors, words[number]) for number in self.space.free]
         shape = (-1,) + (1,) * self.kind.rank
-        return self.space.basis() / np.array(scale, dtype=float).reshape(shape)
+        return np.asarray(self.space.basis() / np.array(scale, dtype=float).reshape(shape))
 
     def sympy(self) -> Any:
         """Return the form as a sympy matrix (or array, beyond two indices of matrix notation) of symbols."""

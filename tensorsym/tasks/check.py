@@ -8,13 +8,14 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from tensorsym.catalog.properties import Property, property_named
+from tensorsym.crystal.directions import direction_namer
 from tensorsym.errors import ShapeError
 from tensorsym.groups.placement import element_in_words, elements_in_words
 from tensorsym.invariants.axes import space_in_axes
 from tensorsym.invariants.projection import orthonormal_basis, projected
 from tensorsym.invariants.relations import combination_text, matrix_factor, matrix_relations
 from tensorsym.invariants.solver import invariant_space
-from tensorsym.tasks.noise import Threshold, noise_threshold
+from tensorsym.tasks.noise import WORKING_SIZE, Threshold, noise_threshold
 from tensorsym.tensors.axes import Axes, read_only, turned
 from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix, matrix_shape
 from tensorsym.tensors.words import components_of
@@ -25,7 +26,7 @@ if TYPE_CHECKING:
 
     from tensorsym.crystal.crystal import Crystal
     from tensorsym.groups.point_group import PointGroup
-    from tensorsym.invariants.space import InvariantSpace
+    from tensorsym.invariants.space import Certificate, InvariantSpace
 
 MOST_SHOWN = 8
 """Largest number of offending components listed."""
@@ -58,6 +59,8 @@ class TensorVerdict:
 
     row: Property
     """The catalogue's row."""
+    crystal: Crystal
+    """The structure that the tensor belongs to."""
     label: str
     """Which tensor of the file this is, in words; empty when there is only one."""
     group: PointGroup
@@ -105,6 +108,11 @@ class TensorVerdict:
         """The allowed tensors in the standard frame, with their certificate."""
         return invariant_space(self.group, self.row.kind)
 
+    @property
+    def certificate(self) -> Certificate:
+        """The number of independent components by two roads."""
+        return self.space.certificate
+
     @cached_property
     def placed_space(self) -> InvariantSpace:
         """The allowed tensors in the tensor's own axes."""
@@ -113,7 +121,7 @@ class TensorVerdict:
     @property
     def elements_in_words(self) -> str:
         """Where the symmetry elements lie in the tensor's axes."""
-        return elements_in_words(self.group, tuple(map(tuple, self.turn.tolist())))
+        return elements_in_words(self.group, tuple(map(tuple, self.turn.tolist())), direction_namer(self.crystal))
 
     @cached_property
     def worst(self) -> tuple[Offence, ...]:
@@ -176,11 +184,30 @@ def check_tensor(
     size = _norm(tensor)
     residual = _norm(tensor - symmetrised) / size if size else 0.0
     share = 1.0 - len(basis) / tensor.size
-    threshold = noise_threshold(size, tensor.size, share, sigma=spread, digits=digits, tolerance=tolerance)
+    threshold = noise_threshold(
+        size,
+        tensor.size,
+        share,
+        sigma=spread,
+        digits=digits,
+        tolerance=tolerance,
+        working_size=WORKING_SIZE.get((row.name, unit or row.unit), 0.0),
+    )
     return TensorVerdict(
-        row, label, group, axes, turn, read_only(tensor), unit or row.unit, read_only(symmetrised), residual, size,
-        threshold, notes,
-    )  # fmt: skip
+        row,
+        crystal,
+        label,
+        group,
+        axes,
+        turn,
+        read_only(tensor),
+        unit or row.unit,
+        read_only(symmetrised),
+        residual,
+        size,
+        threshold,
+        notes,
+    )
 
 
 def verdict_on(verdict: TensorVerdict, values: NDArray[np.float64]) -> TensorVerdict:
@@ -269,7 +296,8 @@ def _offences(verdict: TensorVerdict) -> tuple[Offence, ...]:
     order = np.argsort(-deviation, kind="stable")[:MOST_SHOWN]
     relations = matrix_relations(space, row.symbol, row.factors)
     names, free = [row.symbol + digits for digits in components.digits], set(space.free)
-    images = _images(verdict)
+    images, namer = _images(verdict), direction_namer(verdict.crystal)
+    turn = tuple(map(tuple, verdict.turn.tolist()))
     offences = []
     for number in order:
         if deviation[number] <= NEGLIGIBLE * max(verdict.size, verdict.threshold.absolute):
@@ -278,7 +306,7 @@ def _offences(verdict: TensorVerdict) -> tuple[Offence, ...]:
         changes = np.abs(images[:, word] - given[word]) * scale[number]
         strongest = int(np.argmax(changes))
         rule = name if number in free else combination_text(relations[name]) if name in relations else "0"
-        operation = element_in_words(verdict.group.operations[strongest], tuple(map(tuple, verdict.turn.tolist())))
+        operation = element_in_words(verdict.group.operations[strongest], turn, namer)
         offences.append(
             Offence(
                 name,

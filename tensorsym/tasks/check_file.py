@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from tensorsym.crystal.axes import axes_for
+from tensorsym.crystal.directions import direction_namer
 from tensorsym.crystal.read import read
 from tensorsym.errors import OutputFileError, UsageError
 from tensorsym.groups.placement import elements_in_words
@@ -52,7 +53,8 @@ class CheckReport:
     def elements_in_words(self) -> str:
         """Where the symmetry elements lie in the structure's axes."""
         symmetry = self.crystal.symmetry
-        return elements_in_words(symmetry.group, tuple(map(tuple, symmetry.frame.T.tolist())))
+        turn = tuple(map(tuple, symmetry.frame.T.tolist()))
+        return elements_in_words(symmetry.group, turn, direction_namer(self.crystal))
 
 
 def check_file(
@@ -104,8 +106,8 @@ def check_file(
         crystal = read(path, symprec=symprec)
         records = read_tensors(tensor_path, property=property, order=order, unit=unit, atoms=len(crystal.species))
         form, notes = "tensor file", ()
-    records = _chosen(records, property, str(tensor_path or path))
-    verdicts = tuple(_verdict(crystal, record, axes, sigma, tolerance) for record in records)
+    chosen = _chosen(records, property, str(tensor_path or path))
+    verdicts = tuple(_verdict(crystal, record, axes, sigma, tolerance) for record in chosen)
     told = (*notes, *crystal.notes, *crystal.symmetry_warnings)
     return CheckReport(crystal, str(tensor_path or path), form, file_axes(crystal), verdicts, told)
 
@@ -137,13 +139,29 @@ def _verdict(
     placed = axes_for(crystal, axes) if axes else _stated_axes(crystal, record)
     if record.per_site:
         return check_site_tensors(
-            crystal, record.values, row, axes=placed, unit=record.unit, digits=record.digits,
-            sigma=sigma, tolerance=tolerance, label=record.label, notes=record.notes,
-        )  # fmt: skip
+            crystal,
+            record.values,
+            row,
+            axes=placed,
+            unit=record.unit,
+            digits=record.digits,
+            sigma=sigma,
+            tolerance=tolerance,
+            label=record.label,
+            notes=record.notes,
+        )
     return check_tensor(
-        crystal, record.values, row, axes=placed, unit=record.unit, digits=record.digits,
-        sigma=record.sigma if sigma is None else sigma, tolerance=tolerance, label=record.label, notes=record.notes,
-    )  # fmt: skip
+        crystal,
+        record.values,
+        row,
+        axes=placed,
+        unit=record.unit,
+        digits=record.digits,
+        sigma=record.sigma if sigma is None else sigma,
+        tolerance=tolerance,
+        label=record.label,
+        notes=record.notes,
+    )
 
 
 def _stated_axes(crystal: Crystal, record: TensorRecord) -> Axes:

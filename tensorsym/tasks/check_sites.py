@@ -1,7 +1,7 @@
 """Tensors of atomic sites held against the crystal: each against its site group, and equivalent ones to one another.
 
-One projection does both. An operation carries the tensor of atom i onto the atom it carries i to; averaging the whole set
-over the space group leaves at every atom the part that its site group allows, and makes equivalent atoms agree.
+One projection does both. An operation carries the tensor of atom i onto the atom it carries i to; averaging the whole
+set over the space group leaves at every atom the part that its site group allows, and makes equivalent atoms agree.
 """
 
 from __future__ import annotations
@@ -13,16 +13,17 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from tensorsym.crystal.directions import direction_namer
 from tensorsym.crystal.sites import atom_images
 from tensorsym.errors import ShapeError
-from tensorsym.groups.placement import direction_in_axes, elements_in_words
 from tensorsym.groups.operations import Operation
+from tensorsym.groups.placement import direction_in_axes, elements_in_words
 from tensorsym.groups.point_group import standard_point_group
 from tensorsym.invariants.characters import character
 from tensorsym.invariants.solver import invariant_space
 from tensorsym.invariants.space import Certificate
 from tensorsym.tasks.check import MOST_SHOWN, NEGLIGIBLE, Offence, file_axes
-from tensorsym.tasks.noise import Threshold, noise_threshold
+from tensorsym.tasks.noise import WORKING_SIZE, Threshold, noise_threshold
 from tensorsym.tensors.axes import Axes, read_only
 
 if TYPE_CHECKING:
@@ -90,7 +91,7 @@ class SiteVerdict:
     def elements_in_words(self) -> str:
         """Where the symmetry elements of the class lie in these axes."""
         turn = self.axes.matrix @ self.crystal.symmetry.frame.T
-        return elements_in_words(self.group, tuple(map(tuple, turn.tolist())))
+        return elements_in_words(self.group, tuple(map(tuple, turn.tolist())), direction_namer(self.crystal))
 
     @cached_property
     def worst(self) -> tuple[Offence, ...]:
@@ -146,11 +147,29 @@ def check_site_tensors(
     size, deviation = float(np.linalg.norm(tensors)), float(np.linalg.norm(tensors - symmetrised))
     certificate = _certificate(crystal, row, images)
     share = 1.0 - certificate.by_elimination / tensors.size
-    threshold = noise_threshold(size, tensors.size, share, sigma=sigma, digits=digits, tolerance=tolerance)
+    threshold = noise_threshold(
+        size,
+        tensors.size,
+        share,
+        sigma=sigma,
+        digits=digits,
+        tolerance=tolerance,
+        working_size=WORKING_SIZE.get((row.name, unit or row.unit), 0.0),
+    )
     return SiteVerdict(
-        row, label, crystal, axes, read_only(tensors), unit or row.unit, read_only(symmetrised),
-        deviation / size if size else 0.0, size, threshold, certificate, notes,
-    )  # fmt: skip
+        row,
+        label,
+        crystal,
+        axes,
+        read_only(tensors),
+        unit or row.unit,
+        read_only(symmetrised),
+        deviation / size if size else 0.0,
+        size,
+        threshold,
+        certificate,
+        notes,
+    )
 
 
 def _rotations_in(crystal: Crystal, axes: Axes) -> NDArray[np.float64]:
@@ -175,8 +194,8 @@ def _carried(
 def _certificate(crystal: Crystal, row: Property, images: NDArray[np.intp]) -> Certificate:
     """Count the free components of all atoms by two roads, both exact.
 
-    The trace of the averaging operator counts the character of every operation once for each atom it leaves in place; the
-    other road adds, site by site, the invariants of the site's class.
+    The trace of the averaging operator counts the character of every operation once for each atom it leaves in place;
+    the other road adds, site by site, the invariants of the site's class.
     """
     atoms = np.arange(images.shape[1])
     total = Fraction(0)
@@ -203,25 +222,21 @@ def _offences(verdict: SiteVerdict) -> tuple[Offence, ...]:
         strongest = int(np.argmax(changes))
         atom, indices = place[0], "".join(str(index + 1) for index in place[1:])
         source = int(np.flatnonzero(images[strongest] == atom)[0])
-        rule = (
-            "must agree with its image under the site's own operation"
-            if source == atom
-            else (f"must agree with atom {source + 1}")
-        )
+        rule = "its own image under the site's group" if source == atom else f"the image of that of atom {source + 1}"
         offences.append(
             Offence(
                 f"{verdict.row.symbol}{indices} of atom {atom + 1} ({crystal.species[atom]})",
                 float(values[place]),
                 float(verdict.symmetrised[place]),
                 rule,
-                _operation_words(rotations[strongest]),
+                _operation_words(rotations[strongest], verdict),
                 changes[strongest],
             )
         )
     return tuple(offences)
 
 
-def _operation_words(rotation: NDArray[np.float64]) -> str:
+def _operation_words(rotation: NDArray[np.float64], verdict: SiteVerdict) -> str:
     """Return an orthogonal matrix as an element with its direction."""
     sign = round(float(np.linalg.det(rotation)))
     order = {3: "1", -1: "2", 0: "3", 1: "4", 2: "6"}[round(sign * float(np.trace(rotation)))]
@@ -229,6 +244,9 @@ def _operation_words(rotation: NDArray[np.float64]) -> str:
         return "a translation" if sign > 0 else "the inversion"
     axis = np.linalg.svd(sign * rotation - np.eye(3))[2][2]
     where = direction_in_axes(axis.tolist())
+    if where not in ("x", "y", "z"):
+        turn = verdict.axes.matrix @ verdict.crystal.symmetry.frame.T
+        where = direction_namer(verdict.crystal)(axis @ turn)
     if sign < 0 and order == "2":
         return f"m perpendicular to {where}"
     return f"{order if sign > 0 else '-' + order} along {where}"

@@ -47,4 +47,4 @@ def _document(report: CheckReport, verdict: TensorVerdict | SiteVerdict) -> dict
         "residual_before": verdict.residual,
         "axes": verdict.axes.words,
     }
-    return tensor_document(record, record=done)
+    return tensor_document(record, done)

@@ -16,6 +16,19 @@ Common practice: finite-difference and perturbation runs obey their symmetry to 
 are symmetrised, however many digits are printed.
 """
 
+WORKING_SIZE = {
+    ("piezoelectric-stress", "C/m^2"): 1e-3,
+    ("piezoelectric-stress", "e angstrom"): 5e-3,
+    ("born-charge", "e"): 5e-3,
+    ("dielectric", "1"): 2e-3,
+    ("elastic-stiffness", "kbar"): 5.0,
+    ("elastic-stiffness", "GPa"): 0.5,
+}
+"""Size a component that a calculation cannot tell from zero, by property and unit (common practice).
+
+A tensor that should vanish is judged by this and not by a relative deviation, which means nothing there.
+"""
+
 SIGMAS = 3.0
 """How many standard deviations count as noise."""
 
@@ -29,7 +42,7 @@ class Threshold:
     absolute: float
     """Size of the noise of the tensor in its own unit (norm over all 3**rank components); 0 when not known."""
     source: str
-    """``tolerance``, ``sigma``, ``printed digits`` or ``working accuracy``."""
+    """``tolerance``, ``sigma``, ``printed digits``, ``working accuracy`` or ``working size``."""
 
 
 def noise_threshold(
@@ -40,6 +53,7 @@ def noise_threshold(
     sigma: NDArray[np.float64] | float | None = None,
     digits: float | None = None,
     tolerance: float | None = None,
+    working_size: float = 0.0,
 ) -> Threshold:
     """Return the threshold for a tensor.
 
@@ -57,6 +71,8 @@ def noise_threshold(
         One unit in the last printed place, in the unit of the tensor.
     tolerance : float, optional
         Relative bound asked for by the user; it overrides everything.
+    working_size : float
+        Size of a component that cannot be told from zero, see `WORKING_SIZE`; used when no sigma is stated.
     """
     import numpy as np
 
@@ -66,6 +82,8 @@ def noise_threshold(
         absolute, source = SIGMAS * (total * forbidden_share) ** 0.5, "sigma"
     else:
         absolute, source = (0.5 * digits * words**0.5, "printed digits") if digits else (0.0, "working accuracy")
+        if working_size * words**0.5 > absolute:
+            absolute, source = working_size * words**0.5, "working size"
     if tolerance is not None:
         return Threshold(tolerance, absolute, "tolerance")
     relative = absolute / norm if norm > 0 else 0.0

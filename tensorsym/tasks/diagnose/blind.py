@@ -1,6 +1,7 @@
 """What symmetry could not have seen: mistakes that turn every allowed tensor into another allowed one.
 
-Each mistake is made on a generic allowed tensor; it is blind when the result still obeys the class and is another tensor.
+Each mistake is made on a generic allowed tensor; it is unseen when the result still obeys the class and is another
+tensor.
 """
 
 from __future__ import annotations

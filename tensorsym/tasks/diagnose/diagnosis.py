@@ -62,8 +62,8 @@ class Diagnosis:
 def diagnose(verdict: TensorVerdict, crystal: Crystal) -> Diagnosis:
     """Return the explanations of an inconsistent tensor.
 
-    Cheap hypotheses come first (axes by convention, notation, one wrong number, a lower group); a free rotation and pairs
-    of mistakes are only searched when none of them brings the residual down to the noise.
+    Cheap hypotheses come first (axes by convention, notation, one wrong number, a lower group); a free rotation and
+    pairs of mistakes are only searched when none of them brings the residual down to the noise.
     """
     case = Case(verdict)
     named = named_axes(crystal)
@@ -120,7 +120,7 @@ def _ranked(found: list[Explanation]) -> list[Explanation]:
 
 def _rotation_explanations(case: Case, crystal: Crystal) -> list[Explanation]:
     turn, after = best_rotation(case, case.values)
-    fitted = 3 if case.constraints > 3 else case.constraints
+    fitted = min(case.constraints, 3)
     matrix = read_only(turn @ crystal.symmetry.frame)
     words = words_for(matrix, crystal)
     before = case.verdict.residual
@@ -142,7 +142,7 @@ def _noise(case: Case) -> Explanation:
     verdict = case.verdict
     return Explanation(
         "noise",
-        f"plain noise: deviations of {verdict.residual:.1e} of the tensor's size, of no pattern that another cause gives",
+        f"plain noise: deviations of {verdict.residual:.1e} of the tensor's size, without the pattern of another cause",
         "use the symmetrised tensor (--write), converge the calculation further, or state sigma",
         verdict.residual,
         verdict.residual,

@@ -22,9 +22,9 @@ SIGN_FLIP = 0.02
 def entry_explanations(case: Case) -> list[Explanation]:
     """Return, for every number of the matrix, the explanation that this one alone is wrong.
 
-    The value that brings the residual down most follows from one projection: with r the forbidden part of the tensor and
-    d that of a unit change of the entry, it is the printed value minus ``(r.d)/(d.d)``. A matrix symmetric under
-    exchange of its indices may hold the wrong number once or in both places; both are tried.
+    The value that brings the residual down most follows from one projection: with r the forbidden part of the tensor
+    and d that of a unit change of the entry, it is the printed value minus ``(r.d)/(d.d)``. In a matrix that is
+    symmetric as printed the wrong number stands in both places.
     """
     row = case.verdict.row
     if len(case.basis) == 3**row.kind.rank or case.constraints < 2:
@@ -45,7 +45,10 @@ def entry_explanations(case: Case) -> list[Explanation]:
             continue
         step = -float(wrong_part @ direction) / length
         after = float(np.linalg.norm(wrong_part + step * direction)) / size
-        found.append(_explanation(case, positions[0], printed, step, after, len(patterns), case.values + step * change))
+        mended = case.values + step * change
+        found.append(
+            _explanation(case, positions[0], printed, step=step, after=after, choices=len(patterns), values=mended)
+        )
     return found
 
 
@@ -53,6 +56,7 @@ def _explanation(
     case: Case,
     position: tuple[int, ...],
     printed: NDArray[np.float64],
+    *,
     step: float,
     after: float,
     choices: int,

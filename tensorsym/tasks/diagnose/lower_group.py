@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from tensorsym.crystal.directions import direction_namer
 from tensorsym.errors import GroupSymbolError
 from tensorsym.groups.placement import element_in_words
 from tensorsym.groups.recognition import class_of_rotations
@@ -14,7 +15,7 @@ from tensorsym.tasks.diagnose.case import carried
 from tensorsym.tasks.diagnose.explanation import Explanation, evidence
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Sequence
 
     from numpy.typing import NDArray
 
@@ -45,9 +46,9 @@ def operation_residuals(case: Case) -> tuple[OperationResidual, ...]:
     """Return the residual of every operation of the class but the identity, the best obeyed first."""
     images = operation_images(case)
     size = case.verdict.size
-    turn = tuple(map(tuple, case.turn.tolist()))
+    words = _namer_of(case)
     found = [
-        OperationResidual(_words(operation, turn), float(np.linalg.norm(image - images[0]) / size))
+        OperationResidual(words(operation), float(np.linalg.norm(image - images[0]) / size))
         for operation, image in zip(case.verdict.group.operations[1:], images[1:], strict=True)
     ]
     return tuple(sorted(found, key=lambda item: item.residual))
@@ -79,8 +80,10 @@ def _explanation(
     average = images[sorted(members)].mean(axis=0)
     after = float(np.linalg.norm(images[0] - average) / case.verdict.size)
     kept_conditions = _conditions(case, operations, members)
-    turn = tuple(map(tuple, case.turn.tolist()))
-    kept = ", ".join(_words(operations[index], turn) for index in sorted(members) if index) or "the identity alone"
+    words = _namer_of(case)
+    kept = (
+        ", ".join(dict.fromkeys(words(operations[index]) for index in sorted(members) if index)) or "the identity alone"
+    )
     group = case.verdict.group.hermann_mauguin
     before = case.verdict.residual
     return Explanation(
@@ -113,8 +116,11 @@ def _is_group(operations: Sequence[Operation], members: frozenset[int]) -> bool:
     return all(one @ other in chosen for one in chosen for other in chosen)
 
 
-def _words(operation: Operation, turn: tuple[tuple[float, ...], ...]) -> str:
-    return element_in_words(operation, turn)
+def _namer_of(case: Case) -> Callable[[Operation], str]:
+    """Return what names operations in the tensor's axes."""
+    turn = tuple(map(tuple, case.turn.tolist()))
+    namer = direction_namer(case.verdict.crystal)
+    return lambda operation: element_in_words(operation, turn, namer)
 
 
 def _shortened(text: str, most: int = 160) -> str:

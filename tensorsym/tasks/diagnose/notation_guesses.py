@@ -43,19 +43,17 @@ def order_explanations(case: Case) -> list[Explanation]:
     """Return the explanations by another matrix order; none for a kind without index pairs."""
     if not case.verdict.row.kind.pairs:
         return []
-    found = []
-    for order in KNOWN_ORDERS:
-        found.append(
-            _explanation(
-                case,
-                "matrix-order",
-                f"the index pairs stand in the order {order}, not {VOIGT_ORDER}",
-                f"read the matrix with --order '{order}'",
-                reordered(case, order),
-                len(KNOWN_ORDERS),
-            )
+    return [
+        _explanation(
+            case,
+            "matrix-order",
+            f"the index pairs stand in the order {order}, not {VOIGT_ORDER}",
+            f"read the matrix with --order '{order}'",
+            reordered(case, order),
+            len(KNOWN_ORDERS),
         )
-    return found
+        for order in KNOWN_ORDERS
+    ]
 
 
 def shear_explanations(case: Case) -> list[Explanation]:
@@ -144,15 +142,13 @@ def double_explanations(case: Case, axes_best: list[Explanation]) -> list[Explan
 def _sheared(case: Case, scaling: tuple[float, ...]) -> NDArray[np.float64]:
     row = case.verdict.row
     matrix = to_matrix(case.values, row.kind, row.factors)
-    axis = 0
     place = 0
     shape = matrix_shape(row.kind)
-    for length in shape:
+    for axis, length in enumerate(shape):
         if length == 6:
             weights = np.where(np.arange(6) < 3, 1.0, scaling[row.kind.pairs.index(place)])
             matrix = matrix * weights.reshape([-1 if number == axis else 1 for number in range(len(shape))])
         place += 2 if length == 6 else 1
-        axis += 1
     return from_matrix(matrix, row.kind, row.factors)
 
 

@@ -1,7 +1,7 @@
 """The hypothesis of a free rotation: the axes, whatever they are, in which the numbers obey the class best.
 
-The residual is minimised over all rotations by damped Gauss-Newton steps from many starts at once. A small turn changes a
-tensor by the generators of rotations on each index, so no derivative is taken numerically.
+The residual is minimised over all rotations by damped Gauss-Newton steps from many starts at once. A small turn
+changes a tensor by the generators of rotations on each index, so no derivative is taken numerically.
 """
 
 from __future__ import annotations
