@@ -151,7 +151,7 @@ def _ieee(crystal: Crystal, cell: NDArray[np.float64]) -> NDArray[np.float64]:
         c, a, b = sorted(cell, key=np.linalg.norm)
         if symbol == "mm2":
             polar = crystal.symmetry.frame[2]
-            a, b = sorted((v for v in cell if abs(_unit(v) @ polar) < 0.5), key=np.linalg.norm)
+            a, _b = sorted((v for v in cell if abs(_unit(v) @ polar) < 0.5), key=np.linalg.norm)
             c = polar
         return _z_and_x(c, a)
     if system == "cubic":

@@ -37,11 +37,12 @@ def surd_near(value: float | Fraction) -> Surd | None:
     >>> surd_near(3**0.5 / 2)
     Surd(rational=Fraction(1, 2), radicand=3)
     >>> surd_near(3.14159265)
+    >>> surd_near(1e-9)
     """
     if isinstance(value, Fraction):
         return Surd(value)
     square = Fraction(value * value).limit_denominator(LARGEST_DENOMINATOR)
-    if abs(float(square) - value * value) > 2 * TOLERANCE * max(1.0, value * value):
+    if not square or abs(float(square) - value * value) > 2 * TOLERANCE * max(1.0, value * value):
         return None
     # sqrt(p/q) = sqrt(p q)/q, and the largest square in p q is taken out.
     outside, inside = _square_part(square.numerator * square.denominator)

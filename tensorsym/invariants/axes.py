@@ -23,8 +23,8 @@ if TYPE_CHECKING:
 SNAP = 1e-4
 """Axes this close (largest matrix entry) to a renaming of x, y, z are treated as one; 1e-4 is 0.006 degrees."""
 
-NEGLIGIBLE = 1e-8
-"""Coefficients below this are rounding and stand for zero."""
+NEGLIGIBLE = 1e-6
+"""Coefficients below this are rounding, of the lattice as printed too, and stand for zero."""
 
 SignedAxes = tuple[tuple[int, int], tuple[int, int], tuple[int, int]]
 """For each new axis: the standard axis it lies along and the sense, 1 or -1."""

@@ -22,8 +22,36 @@ def check_document(report: CheckReport) -> dict[str, Any]:
         "group": group_document(report.crystal.symmetry.group),
         "axes": axes_document(report.axes, report.elements_in_words),
         "verdict": report.verdict,
-        "tensors": [verdict_document(verdict) for verdict in report.verdicts],
+        "tensors": [
+            verdict_document(verdict) | _diagnosis(report, number) for number, verdict in enumerate(report.verdicts)
+        ],
         "notes": list(report.notes),
+    }
+
+
+def _diagnosis(report: CheckReport, number: int) -> dict[str, Any]:
+    """Return what may be wrong with an inconsistent tensor, or what a consistent one does not exclude."""
+    diagnosis = report.diagnoses.get(number)
+    spots = report.blind_spots.get(number, ())
+    blind = {"blind_spots": [{"kind": spot.kind, "sentence": spot.sentence} for spot in spots]}
+    if diagnosis is None:
+        return blind
+    return {
+        "explanations": [
+            {
+                "kind": explanation.kind,
+                "sentence": explanation.sentence,
+                "change": explanation.change,
+                "residual_before": explanation.residual_before,
+                "residual_after": explanation.residual_after,
+                "evidence": explanation.evidence,
+                "axes": explanation.axes.matrix.tolist(),
+            }
+            for explanation in diagnosis.explanations
+        ],
+        "ambiguous": diagnosis.is_ambiguous,
+        "kept": [{"operation": item.operation, "residual": item.residual} for item in diagnosis.kept],
+        "broken": [{"operation": item.operation, "residual": item.residual} for item in diagnosis.broken],
     }
 
 

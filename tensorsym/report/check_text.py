@@ -11,6 +11,7 @@ if TYPE_CHECKING:
     from tensorsym.tasks.check import Offence, TensorVerdict
     from tensorsym.tasks.check_file import CheckReport
     from tensorsym.tasks.check_sites import SiteVerdict
+    from tensorsym.tasks.diagnose.diagnosis import Diagnosis
 
 WORDS = {
     "consistent": "consistent",
@@ -32,7 +33,43 @@ def check_text(report: CheckReport) -> str:
         paragraph("     ", [report.elements_in_words]),
     ]
     lines += [paragraph("Note:", [note]) for note in report.notes]
-    return "\n\n".join(["\n".join(lines), *(verdict_text(verdict) for verdict in report.verdicts), _summary(report)])
+    return "\n\n".join(["\n".join(lines), *_verdicts(report), _summary(report)])
+
+
+def _verdicts(report: CheckReport) -> list[str]:
+    parts = []
+    for number, verdict in enumerate(report.verdicts):
+        lines = [verdict_text(verdict)]
+        if number in report.diagnoses:
+            lines += _explanations(report.diagnoses[number])
+        elif report.blind_spots.get(number):
+            lines.append(paragraph("    blind here:", [spot.sentence for spot in report.blind_spots[number]], "; "))
+        parts.append("\n".join(lines))
+    return parts
+
+
+def _explanations(diagnosis: Diagnosis) -> list[str]:
+    """Return the explanations, numbered, the most likely first; of two that cannot be told apart it says so."""
+    lines = []
+    for number, explanation in enumerate(diagnosis.explanations, 1):
+        head = "most likely" if number == 1 and not diagnosis.is_ambiguous else "possible"
+        lines.append(paragraph(f"  {number} {head}:", [explanation.sentence]))
+        after = residual(explanation.residual_after)
+        lines.append(paragraph("      ", [f"residual {after} then; {explanation.change}"]))
+    if diagnosis.is_ambiguous:
+        lines.append("    the first explanations cannot be told apart by symmetry")
+    if diagnosis.kept:
+        lines.append(
+            paragraph("    kept:", list(dict.fromkeys(item.operation for item in diagnosis.kept))[:MOST_LISTED])
+        )
+    if diagnosis.broken:
+        broken = [f"{item.operation} ({residual(item.residual)})" for item in diagnosis.broken]
+        lines.append(paragraph("    broken:", list(dict.fromkeys(broken))[:MOST_LISTED]))
+    return lines
+
+
+MOST_LISTED = 8
+"""Operations listed as kept or broken."""
 
 
 def verdict_text(verdict: TensorVerdict | SiteVerdict) -> str:

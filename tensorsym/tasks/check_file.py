@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 from tensorsym.crystal.axes import axes_for
@@ -21,6 +22,8 @@ if TYPE_CHECKING:
 
     from tensorsym.crystal.crystal import Crystal
     from tensorsym.outputs.record import TensorRecord
+    from tensorsym.tasks.diagnose.blind import BlindSpot
+    from tensorsym.tasks.diagnose.diagnosis import Diagnosis
 
 
 @dataclass(frozen=True, eq=False)
@@ -39,6 +42,30 @@ class CheckReport:
     """One a tensor, in the order of the file."""
     notes: tuple[str, ...]
     """What the reader has to know."""
+
+    @cached_property
+    def diagnoses(self) -> dict[int, Diagnosis]:
+        """What may be wrong with each inconsistent tensor, by its number in `verdicts`; site tensors are not diagnosed."""
+        from tensorsym.tasks.diagnose.diagnosis import diagnose
+
+        return {
+            number: diagnose(verdict, self.crystal)
+            for number, verdict in enumerate(self.verdicts)
+            if isinstance(verdict, TensorVerdict) and not verdict.is_consistent
+        }
+
+    @cached_property
+    def blind_spots(self) -> dict[int, tuple[BlindSpot, ...]]:
+        """What a clean verdict does not exclude, by the number of the tensor in `verdicts`."""
+        from tensorsym.tasks.diagnose.blind import blind_spots
+        from tensorsym.tasks.diagnose.named_axes import named_axes
+
+        named = named_axes(self.crystal)
+        return {
+            number: blind_spots(verdict, named)
+            for number, verdict in enumerate(self.verdicts)
+            if isinstance(verdict, TensorVerdict) and verdict.is_consistent
+        }
 
     def __repr__(self) -> str:
         """Return one line."""
