@@ -24,7 +24,7 @@ def main() -> NoReturn:
     from tensorsym.errors import TensorsymError
 
     try:
-        code = commands.main(prog_name="tensorsym", standalone_mode=False)
+        code = commands.main(args=_arguments(), prog_name="tensorsym", standalone_mode=False)
     except TensorsymError as error:
         _fail(str(error), error.exit_code)
     except ClickException as error:
@@ -41,6 +41,14 @@ def main() -> NoReturn:
         told = f"{type(error).__name__}: {error}"
         _fail(f"internal error, please report it: {told} (TENSORSYM_TRACEBACK=1 shows more)", INTERNAL)
     sys.exit(code if isinstance(code, int) else 0)
+
+
+def _arguments() -> list[str]:
+    """Return the arguments, group symbols such as -43m protected from being taken for options.
+
+    No option begins with a digit, so a hyphen before a digit is a bar: it becomes a minus sign, which symbols may have.
+    """
+    return ["\N{MINUS SIGN}" + word[1:] if word[:1] == "-" and word[1:2].isdigit() else word for word in sys.argv[1:]]
 
 
 def _fail(line: str, code: int) -> NoReturn:
