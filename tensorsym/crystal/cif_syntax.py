@@ -1,7 +1,7 @@
 """The syntax of CIF 1.1: data blocks of named items and loops, with the line of each.
 
-Source: Hall, Allen and Brown, Acta Cryst. A47, 655 (1991); International Tables for Crystallography, vol. G, chapter 2.2
-(from memory).
+Source: Hall, Allen and Brown, Acta Cryst. A47, 655 (1991); International Tables for Crystallography, vol. G (2006),
+chapter 2.2, from memory.
 """
 
 from __future__ import annotations
@@ -150,10 +150,13 @@ def _token(found: re.Match[str], line: int) -> _Token:
     folded = word.lower()
     if word.startswith("_"):
         return _Token("name", folded.replace(".", "_"), line)
-    if folded.startswith("data_"):
-        return _Token("data", word[5:], line)
-    if folded == "loop_":
-        return _Token("loop", word, line)
-    if folded.startswith("save_") or folded in ("global_", "stop_"):
-        return _Token("save", word, line)
+    for start, kind in (
+        ("data_", "data"),
+        ("loop_", "loop"),
+        ("save_", "save"),
+        ("global_", "save"),
+        ("stop_", "save"),
+    ):
+        if folded.startswith(start):
+            return _Token(kind, word[len(start) :], line)
     return _Token("value", "" if word in (".", "?") else word, line)

@@ -182,9 +182,7 @@ def _operations(block: Block, cell: Sequence[float], source: str, notes: list[st
     return operations_of_space_group(name.text, where)
 
 
-def _listed_operations(
-    listed: Sequence[Value], block: Block, source: str, notes: list[str]
-) -> SpaceGroupOperations:
+def _listed_operations(listed: Sequence[Value], block: Block, source: str, notes: list[str]) -> SpaceGroupOperations:
     found = [operation_in_text(_without_time(value.text), f"{source}, line {value.line}") for value in listed]
     if block.column(_OPERATIONS[2]):
         notes.append("magnetic moments are not read: the group is that of the atoms alone")

@@ -3,75 +3,132 @@
 from __future__ import annotations
 
 import json
-from typing import Any
+from dataclasses import replace
+from typing import TYPE_CHECKING, Any
 
-from tensorsym.crystal.crystal import Crystal
-from tensorsym.crystal.formats_vasp import AXES, read_poscar
+import numpy as np
+
+from tensorsym.crystal.formats_poscar import read_poscar
+from tensorsym.crystal.mixed_sites import element_in, species_label
+from tensorsym.crystal.molecule import molecule_in_box
+from tensorsym.crystal.numbers_in import CUT_OFF, chosen
+from tensorsym.crystal.parts import StructureParts
 from tensorsym.errors import StructureError
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from tensorsym.crystal.crystal import Crystal
 
 DEEPEST = 6
 """How deep a structure may lie in a document."""
 
+MOST_CHILDREN = 1000
+"""How many entries of a list are looked through."""
+
+_FIRST_LOOK = ("structure", "final_structure", "initial_structure")
+"""Keys that are looked into before the others."""
+
 
 def looks_like_json(text: str) -> bool:
-    """Tell JSON by its first character."""
-    return text.lstrip()[:1] in ("{", "[")
+    """Tell JSON by its first character and its first name."""
+    start = text.lstrip()[:200].replace(" ", "").replace("\n", "")
+    return start.startswith(('{"', "[{", "[[", "{}", "[]"))
 
 
-def read_json(text: str, source: str) -> Crystal:
-    """Return the first structure found in a JSON document."""
+def read_json(text: str, source: str, index: int | None = None) -> StructureParts:
+    """Return a structure of a JSON document.
+
+    Parameters
+    ----------
+    text, source : str
+        The file and its name.
+    index : int, optional
+        Which of the structures, from 0; the first when absent.
+
+    Raises
+    ------
+    StructureError
+        If it is no JSON, or holds no sound structure.
+    """
     try:
         document = json.loads(text)
+    except json.JSONDecodeError as error:
+        if error.msg != "Extra data":
+            msg = f"is no JSON document: {error}"
+            raise StructureError(msg, where=source, hint=CUT_OFF) from error
+        return _of_lines(text, source, index)
     except (ValueError, RecursionError) as error:
         msg = f"is no JSON document: {error}"
-        raise StructureError(msg, where=source, hint="the file may be cut off") from error
-    return crystal_in_document(document, source)
+        raise StructureError(msg, where=source) from error
+    return parts_in_document(document, source, index)
 
 
 def crystal_in_document(document: Any, source: str) -> Crystal:
-    """Return the crystal that a JSON document holds as a pymatgen structure or as the text of a POSCAR.
+    """Return the first crystal that a JSON document holds as a pymatgen structure or as the text of a POSCAR.
 
     Raises
     ------
     StructureError
         If it holds none, or a damaged one.
     """
-    found = _structure_in(document, 0)
-    if isinstance(found, str):
-        return read_poscar(found, source)
-    if found is None:
-        raise StructureError("holds no structure", where=source, expected="a pymatgen structure with lattice and sites")
+    return parts_in_document(document, source).crystal(source)
+
+
+def parts_in_document(document: Any, source: str, index: int | None = None) -> StructureParts:
+    """Return what a document holds as a structure: see `read_json`."""
+    found = list(_structures_in(document, 0)) if index else [next(_structures_in(document, 0), None)]
     try:
-        lattice = found["lattice"]["matrix"]
-        positions = [site["abc"] for site in found["sites"]]
-        species = [_label(site) for site in found["sites"]]
-    except (KeyError, TypeError, IndexError) as error:
-        msg = f"the structure lacks {error}"
+        structure = found[index or 0]
+    except IndexError:
+        msg = f"there is no structure {index} among {len(found)}"
+        raise StructureError(msg, where=source) from None
+    if structure is None:
+        raise StructureError("holds no structure", where=source, expected="a pymatgen structure with lattice and sites")
+    if isinstance(structure, str):
+        return read_poscar(structure, source)
+    try:
+        species = [_label(site) for site in structure["sites"]]
+        if structure.get("lattice") is None:
+            places = [site["xyz"] for site in structure["sites"]]
+            return molecule_in_box(places, species, source, "pymatgen JSON")
+        lattice = np.array(structure["lattice"]["matrix"], dtype=float)
+        positions = np.array([site["abc"] for site in structure["sites"]], dtype=float)
+    except (AttributeError, KeyError, TypeError, IndexError, ValueError) as error:
+        msg = f"the structure is damaged at {str(error)[:80]}"
         raise StructureError(msg, where=source, expected="lattice.matrix, and abc and species of every site") from error
-    return Crystal(lattice, positions, species, source=source, format="JSON", axes_words=AXES)
+    return StructureParts("pymatgen JSON", lattice, positions, species)
 
 
-def _structure_in(node: Any, depth: int) -> Any:
-    if depth > DEEPEST:
-        return None
+def _of_lines(text: str, source: str, index: int | None) -> StructureParts:
+    """Return a structure of a file with one document a line."""
+    lines = [(number, line) for number, line in enumerate(text.splitlines(), 1) if line.strip()]
+    notes: list[str] = []
+    number, line = lines[chosen(range(len(lines)), index, source, "document", notes)]
+    parts = read_json(line, f"{source}, line {number}")
+    return replace(parts, notes=(*notes, *parts.notes))
+
+
+def _structures_in(node: Any, depth: int) -> Iterator[Any]:
+    if depth > DEEPEST or not isinstance(node, dict | list):
+        return
     if isinstance(node, dict):
-        if isinstance(node.get("lattice"), dict) and isinstance(node.get("sites"), list):
-            return node
+        if isinstance(node.get("sites"), list) and ("lattice" in node or node.get("@class") == "Molecule"):
+            yield node
+            return
         if isinstance(node.get("poscar"), str):
-            return node["poscar"]
-        children = [node[key] for key in ("structure", "final_structure", "initial_structure") if key in node]
-        children += [child for child in node.values() if isinstance(child, dict | list)]
-    elif isinstance(node, list):
-        children = node[:20]
+            yield node["poscar"]
+        children = [node[key] for key in _FIRST_LOOK if key in node]
+        children += [child for key, child in node.items() if key not in _FIRST_LOOK]
     else:
-        return None
-    return next((found for child in children if (found := _structure_in(child, depth + 1)) is not None), None)
+        children = node[:MOST_CHILDREN]
+    for child in children:
+        yield from _structures_in(child, depth + 1)
 
 
 def _label(site: dict[str, Any]) -> str:
-    species = site["species"]
-    if len(species) == 1 and abs(float(species[0].get("occu", 1)) - 1) < 1e-6:
-        return str(species[0]["element"])
-    return "".join(
-        f"{item['element']}{float(item['occu']):.4g}" for item in sorted(species, key=lambda i: i["element"])
-    )
+    composition: dict[str, float] = {}
+    for item in site["species"]:
+        element = element_in(str(item["element"]))
+        composition[element] = composition.get(element, 0.0) + float(item.get("occu", 1.0))
+    return species_label(composition)

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, NamedTuple
 import numpy as np
 
 from tensorsym.catalog.properties import property_named
-from tensorsym.crystal.formats_vasp import read_outcar
+from tensorsym.crystal.read import crystal_in_text
 from tensorsym.errors import OutputFileError
 from tensorsym.outputs.record import OutputFile, TensorRecord
 from tensorsym.tensors.notation import from_matrix
@@ -69,7 +69,7 @@ def read_vasp_outcar(text: str, source: str) -> OutputFile:
         If a table is cut off or holds asterisks or other words in place of numbers.
     """
     lines = text.splitlines()
-    crystal = read_outcar(text, source)
+    crystal = crystal_in_text(text, source)
     found: dict[tuple[str, str, str], TensorRecord] = {}
     for number, line in enumerate(lines):
         if "TENSOR" in line or "MODULI" in line:
