@@ -16,6 +16,8 @@ if TYPE_CHECKING:
 WIDTH = 80
 """Columns of a screen."""
 
+_HARD_BLANK = "\N{NO-BREAK SPACE}"
+
 LARGEST_GRID = 6**3
 """A matrix with more entries than this is told by its components alone."""
 
@@ -27,8 +29,13 @@ def paragraph(head: str, words: Iterable[str], separator: str = ", ") -> str:
     'zero: d11, d12'
     """
     indent = " " * (len(head) - len(head.lstrip()) + 4)
-    text = f"{head} {separator.join(words)}"
-    return textwrap.fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
+    items = list(words)
+    if len(items) > 1:
+        # Keep each item whole: its blanks are made unbreakable while the lines are filled.
+        items = [item.replace(" ", _HARD_BLANK) if len(item) < WIDTH // 2 else item for item in items]
+    text = f"{head} {separator.join(items)}"
+    filled = textwrap.fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
+    return filled.replace(_HARD_BLANK, " ")
 
 
 def matrix_grids(kind: TensorKind, shape: Sequence[int], entry: Callable[[tuple[int, ...]], str]) -> list[str]:

@@ -83,6 +83,9 @@ def diagnose(verdict: TensorVerdict, crystal: Crystal) -> Diagnosis:
         found += _rotation_explanations(case, crystal)
     ranked = _ranked(found)
     told = [explanation for explanation in ranked if explanation.evidence > WORTH_TELLING][: MOST_TOLD - 1]
+    if not told and verdict.residual > NOISE_AT_MOST:
+        # Too few conditions to prove anything, yet too large for noise: tell what would repair it.
+        told = [item for item in ranked if item.residual_after <= _noise_bound(case) and item.kind != "lower-group"][:3]
     if not told or verdict.residual < NOISE_AT_MOST:
         told.append(_noise(case))
     bound = 2 * max(verdict.threshold.relative, case.floor)
@@ -100,8 +103,12 @@ NOISE_AT_MOST = 0.1
 
 def _explains(case: Case, explanation: Explanation) -> bool:
     """Tell whether an explanation leaves no more than noise, while conditions remain that could have failed."""
-    bound = max(case.verdict.threshold.relative, 3 * case.floor)
-    return explanation.residual_after <= bound and explanation.evidence > WORTH_TELLING
+    return explanation.residual_after <= _noise_bound(case) and explanation.evidence > WORTH_TELLING
+
+
+def _noise_bound(case: Case) -> float:
+    """Return the relative residual that noise explains."""
+    return max(case.verdict.threshold.relative, 3 * case.floor)
 
 
 def _ranked(found: list[Explanation]) -> list[Explanation]:

@@ -88,7 +88,7 @@ def _forbidden(case: Case, values: NDArray[np.float64]) -> NDArray[np.float64]:
 
 def _is_symmetric(matrix: NDArray[np.float64]) -> bool:
     square = matrix.ndim == 2 and matrix.shape[0] == matrix.shape[1]
-    return square and bool(np.allclose(matrix, matrix.T, rtol=1e-9, atol=0.0))
+    return square and bool(np.allclose(matrix, matrix.T, rtol=0.0, atol=1e-9 * np.abs(matrix).max()))
 
 
 def _patterns(shape: tuple[int, ...], *, symmetric: bool) -> list[tuple[tuple[int, ...], ...]]:
