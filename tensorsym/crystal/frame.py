@@ -41,6 +41,8 @@ class PlacedGroup(NamedTuple):
     """The class in its standard setting."""
     frame: NDArray[np.float64]
     """Shape (3, 3), read-only: rows are unit x, y, z of the standard frame in the lattice's Cartesian axes."""
+    cell: NDArray[np.float64]
+    """Shape (3, 3): the lattice with exactly the metric that the group demands, stretched but not turned."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -90,12 +92,12 @@ def placed_group(rotations: NDArray[np.intc], lattice: NDArray[np.float64]) -> P
     if prepared.axes == "":
         frame = np.eye(3)
     elif prepared.axes == "xz":
-        frame = _closest_of(prepared.first @ cell, prepared.second @ cell)
+        frame = closest_frame(prepared.first @ cell, prepared.second @ cell)
     else:
         frame = _closest_turn(_unit(prepared.first[0] @ cell), "xyz".index(prepared.axes))
     frame += 0.0
     frame.setflags(write=False)
-    return PlacedGroup(prepared.group, frame)
+    return PlacedGroup(prepared.group, frame, cell)
 
 
 @lru_cache(maxsize=4096)
@@ -129,8 +131,19 @@ def _symmetrised(lattice: NDArray[np.float64], average: NDArray[np.float64]) -> 
     return lattice
 
 
-def _closest_of(x: NDArray[np.float64], z: NDArray[np.float64]) -> NDArray[np.float64]:
-    """Return the frame closest to the unit matrix among rows of x and z, each pair perpendicular."""
+def closest_frame(x: NDArray[np.float64], z: NDArray[np.float64]) -> NDArray[np.float64]:
+    """Return the frame closest to the unit matrix among candidates for x and z, each pair perpendicular.
+
+    Parameters
+    ----------
+    x, z : ndarray of shape (n, 3)
+        Directions of any length.
+
+    Returns
+    -------
+    ndarray of shape (3, 3)
+        Rows are unit x, y = z x x and z.
+    """
     x = x / np.sqrt(np.einsum("ij,ij->i", x, x))[:, None]
     z = z / np.sqrt(np.einsum("ij,ij->i", z, z))[:, None]
     frames = np.empty((len(x), 3, 3))

@@ -27,7 +27,7 @@ class Site:
     """One set of equivalent atoms, seen from its first atom."""
 
     label: str
-    """Species and running number among the sites of that species, such as ``O2``."""
+    """Species and running number among the sites of that species, such as ``O2`` or ``(K0.5Na0.5)1``."""
     species: str
     """What sits there."""
     atoms: tuple[int, ...]
@@ -109,9 +109,10 @@ def _site(crystal: Crystal, first: int, number: int) -> Site:
     except GroupSymbolError as error:
         msg = f"the operations that leave atom {first + 1} alone form no group at symprec {symmetry.symprec:g}"
         raise StructureError(msg, where=crystal.source or None, hint="use a smaller symprec") from error
+    species = crystal.species[first]
     return Site(
-        f"{crystal.species[first]}{number}",
-        crystal.species[first],
+        f"{species}{number}" if species.isalpha() else f"({species}){number}",
+        species,
         tuple(atoms.tolist()),
         crystal.positions[first],
         f"{round(conventional)}{symmetry.wyckoffs[first]}",

@@ -35,12 +35,10 @@ class CrystalSymmetry:
     """The class in its standard setting."""
     frame: NDArray[np.float64]
     """Shape (3, 3), read-only: rows are unit x, y, z of the standard frame in the file's Cartesian axes."""
-    file_cell: NDArray[np.float64]
-    """Shape (3, 3), read-only: rows are the lattice vectors of the file, in Å and its axes."""
     cell: NDArray[np.float64]
     """Shape (3, 3), read-only: rows are the lattice vectors, in Å and the file's axes, that the operations refer to.
 
-    That is `file_cell`, unless it is a supercell whose shape breaks the class: then the standard cell.
+    That is the file's cell, unless it is a supercell whose shape breaks the class: then the standard cell.
     """
     rotations: NDArray[np.intc]
     """Shape (n, 3, 3), read-only: ``x' = W x + w`` on columns of fractional coordinates of `cell`."""
@@ -56,7 +54,9 @@ class CrystalSymmetry:
     """Shape (3, 3), read-only: P of spglib, ``(a b c)_file = (a b c)_standard P``, not idealised."""
     symprec: float
     """Å. Atoms within this distance of their image count as equivalent."""
-    cell_keeps_class: bool = True
+    symmetrised_cell: NDArray[np.float64]
+    """Shape (3, 3), read-only: `cell` with exactly the metric that the class demands, stretched but not turned."""
+    cell_keeps_class: bool
     """False when the file's cell is a supercell whose shape breaks the class: then `cell` is `standard_cell`."""
 
     def __repr__(self) -> str:
@@ -68,8 +68,10 @@ class CrystalSymmetry:
 
     @property
     def standard_cell(self) -> NDArray[np.float64]:
-        """Shape (3, 3): rows are the conventional cell of the standard setting, in Å and the file's axes."""
-        return _standard_cell(self.file_cell, self.to_standard)
+        """Shape (3, 3): rows are the symmetrised cell of the standard setting, in Å and the file's axes."""
+        return (
+            _standard_cell(self.symmetrised_cell, self.to_standard) if self.cell_keeps_class else self.symmetrised_cell
+        )
 
     def cartesian_rotations(self) -> NDArray[np.float64]:
         """Return the rotations in the file's Cartesian axes, orthogonal to rounding, shape (n, 3, 3)."""
@@ -106,12 +108,18 @@ def symmetry_of(crystal: Crystal, symprec: float) -> CrystalSymmetry:
     if placed is None:
         msg = f"the operations found at symprec {symprec:g} do not form the class of {found.international}"
         raise StructureError(msg, where=where, hint="use a smaller symprec")
-    for array in (rotations, translations, found.crystallographic_orbits, found.transformation_matrix):
+    for array in (
+        rotations,
+        translations,
+        found.crystallographic_orbits,
+        found.transformation_matrix,
+        placed.cell,
+    ):
         array.setflags(write=False)
     return CrystalSymmetry(
-        found.number, found.international, found.hall_number, placed.group, placed.frame, lattice, cell, rotations,
+        found.number, found.international, found.hall_number, placed.group, placed.frame, cell, rotations,
         translations, tuple(found.wyckoffs), tuple(found.site_symmetry_symbols), found.crystallographic_orbits,
-        found.transformation_matrix, symprec, keeps_class,
+        found.transformation_matrix, symprec, placed.cell, keeps_class,
     )  # fmt: skip
 
 
