@@ -43,10 +43,11 @@ def class_of_rotations(rotations: frozenset[Matrix]) -> str:
     >>> class_of_rotations(frozenset({((1, 0, 0), (0, 1, 0), (0, 0, 1)), ((-1, 0, 0), (0, -1, 0), (0, 0, 1))}))
     '2'
     """
-    counts = frozenset(Counter(symbol_of(matrix) for matrix in rotations).items())
+    counts: Counter[str] = Counter()
     try:
-        return _class_by_counts()[counts]
-    except KeyError:
+        counts.update(map(symbol_of, rotations))
+        return _class_by_counts()[frozenset(counts.items())]
+    except KeyError:  # no such class, or a matrix with the trace of no operation
         msg = f"{len(rotations)} rotations form none of the 32 classes ({dict(counts)})"
         raise GroupSymbolError(msg, hint="the cell may be distorted more than the tolerance") from None
 

@@ -9,7 +9,7 @@ from tensorsym.groups.classes import CLASSES, SAME_SETTING, SPACE_GROUP_RANGES
 from tensorsym.groups.point_group import PointGroup, point_group_in_setting
 
 _MINUS = str.maketrans({"−": "-", "–": "-", "‑": "-", "¯": "-", "_": "", " ": "", "{": "", "}": "", "$": ""})
-_NUMBER = re.compile(r"(?:no\.?|sg|#)?(\d{1,3})", re.IGNORECASE)
+_NUMBER = re.compile(r"(?:no\.?|sg|#)?([0-9]{1,3})", re.IGNORECASE)
 _SPACE_GROUPS = 230
 
 
