@@ -53,7 +53,8 @@ class TensorKind:
             if sorted(permutation) != list(range(self.rank)) or sign not in (1, -1):
                 msg = f"({permutation}, {sign}) is no signed permutation of {self.rank} indices"
                 raise UsageError(msg)
-        if self.traceless and not (self.rank == 2 and ((1, 0), 1) in self.index_group):
+        exchangeable = ((1, 0), 1) in self.index_group  # here a contradiction of the index equations comes out
+        if self.traceless and not exchangeable:
             msg = "only a symmetric tensor of rank 2 can be declared traceless"
             raise UsageError(msg)
 

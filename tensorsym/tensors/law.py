@@ -134,13 +134,15 @@ def _terms(text: str) -> tuple[Term, Term, list[Term]]:
 
 
 def _scan(text: str, start: int, stop: int) -> list[Term]:
-    terms = []
+    terms: list[Term] = []
     place = start
     while place < stop:
         found = _TOKEN.match(text, place, stop)
         if found is None:
             msg = f"{text[place]!r} has no meaning here"
             raise _error(msg, text, place)
+        if found["sign"] and terms:
+            raise _error("a sign stands only in front of a product, and sums are no laws", text, place)
         if found["name"]:
             indices = (found["braced"] if found["braced"] is not None else found["bare"]) or ""
             indices = re.sub(r"[\s,]", "", indices)
@@ -225,7 +227,7 @@ def _exchange(
 
 def _equation(equation: str, coefficient: Term) -> SignedPermutation:
     """Return the signed permutation that ``chi_ijk = -chi_ikj`` states."""
-    left_text, equals, right_text = equation.partition("=")
+    left_text, equals, _ = equation.partition("=")
     left = _scan(equation, 0, len(left_text))
     right = _scan(equation, len(left_text) + 1, len(equation)) if equals else []
     if len(left) != 1 or len(right) != 1:
@@ -236,8 +238,11 @@ def _equation(equation: str, coefficient: Term) -> SignedPermutation:
             raise _error(msg, equation, term.position)
     if sorted(left[0].indices) != sorted(right[0].indices) or len(set(left[0].indices)) != len(left[0].indices):
         raise _error("both sides need the same letters, each once", equation, right[0].position)
+    factor = next((token.start() for token in _TOKEN.finditer(equation) if token["number"]), None)
+    if factor is not None:
+        raise _error("an index equation has no factor but a sign", equation, factor)
     permutation = tuple(left[0].indices.index(letter) for letter in right[0].indices)
-    return permutation, -1 if right_text.strip().startswith(("-", "−")) else 1
+    return permutation, -1 if sum(map(equation.count, "-−")) % 2 else 1
 
 
 def _factor(place: int, quantities: Sequence[Quantity], places: Sequence[tuple[int, ...]]) -> int:
