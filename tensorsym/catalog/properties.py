@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import json
+import pkgutil
 from dataclasses import dataclass
 from functools import cached_property, lru_cache
-from importlib import resources
 from typing import TYPE_CHECKING
 
 from tensorsym.errors import UnknownNameError, nearest_names
@@ -28,7 +28,7 @@ class Property:
     symbol: str
     """Symbol of its components."""
     law: str
-    """The law that defines it."""
+    """The law that defines it, in the syntax of `tensorsym.tensors.law.parse_law`."""
     equations: tuple[str, ...]
     """Index equations beyond the law."""
     regime: str
@@ -36,15 +36,15 @@ class Property:
     site: bool
     """True for a property of one atomic site, held to the group of the site."""
     unit: str
-    """SI unit."""
+    """Unit in SI, or the field's own for charges (e), band energies (eV) and shifts (1e-6)."""
     matrix_factors: tuple[int, ...] | None
-    """Factors of matrix notation where the trade's differ from the law's; None for those of the law."""
+    """One factor for each pair of `kind.pairs` where the trade's differ from the law's; None for those of the law."""
     traceless: bool
     """True when the trace vanishes by definition."""
     cautions: tuple[str, ...]
     """What can hurt in measuring it."""
     source: str
-    """Where the definition stands."""
+    """Where the definition stands; ``(memory)`` marks what was recalled and not looked up."""
 
     @cached_property
     def parsed(self) -> Law:
@@ -90,33 +90,40 @@ def property_named(name: str) -> Property:
 
 
 def properties_matching(word: str) -> tuple[Property, ...]:
-    """Return the properties whose name, title, aliases or law hold a word.
+    """Return the properties whose name, title, aliases or law hold a word, in any case.
 
     Raises
     ------
     UnknownNameError
-        If there is none.
+        If there is none; the nearest names are offered.
+
+    Examples
+    --------
+    >>> [row.name for row in properties_matching("gyration")]
+    ['optical-activity', 'electrogyration', 'piezogyration', 'acoustic-gyration']
     """
-    wanted = word.casefold()
+    wanted = _plain(word)
     found = tuple(
         row
         for row in all_properties()
-        if wanted in " ".join((row.name, row.title, *row.aliases, row.law)).casefold().replace("_", " ")
-        or _plain(word) in row.name
+        if any(wanted in _plain(text) for text in (row.name, row.title, *row.aliases, row.law))
     )
     if not found:
         msg = f"no property matches {word!r}"
-        raise UnknownNameError(msg, nearest=nearest_names(_plain(word), _names()))
+        hint = "`tensorsym properties` without a word lists all"
+        raise UnknownNameError(msg, nearest=nearest_names(wanted, _names()), hint=hint)
     return found
 
 
 def _plain(name: str) -> str:
+    """Return a name as the catalogue spells names: lower case, words joined by hyphens."""
     return "-".join(name.casefold().replace("_", " ").replace("-", " ").split())
 
 
 @lru_cache(maxsize=1)
 def _rows() -> dict[str, Property]:
-    text = resources.files("tensorsym.catalog").joinpath("properties.json").read_text(encoding="utf-8")
+    # importlib.resources would load tempfile, shutil and more at every start, about 17 ms.
+    content = pkgutil.get_data("tensorsym.catalog", "properties.json") or b""
     return {
         row["name"]: Property(
             name=row["name"],
@@ -133,7 +140,7 @@ def _rows() -> dict[str, Property]:
             cautions=tuple(row["cautions"]),
             source=row["source"],
         )
-        for row in json.loads(text)["properties"]
+        for row in json.loads(content)["properties"]
     }
 
 
