@@ -78,11 +78,11 @@ def _scale(line: str, vectors: NDArray[np.float64], source: str) -> NDArray[np.f
 
 def _species(lines: Sequence[str], source: str) -> tuple[list[str], list[int], int]:
     """Return names (none in version 4), counts, and the place of the next line."""
-    words = lines[5].split()
+    words = re.split(r"[!#]", lines[5])[0].split()
     place = 5
     names: list[str] = []
     if words and not words[0].isdigit():
-        names = [re.split(r"[_/]", word)[0] for word in words if not word.startswith(("!", "#"))]
+        names = [re.split(r"[_/]", word)[0] for word in words]
         place = 6
     line = re.split(r"[!#]", line_at(lines, place, source, "the numbers of atoms"))[0]
     counts = [whole_number(word, source, place + 1, "number of atoms") for word in line.split()]

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-import io
 import re
+import tempfile
 import warnings
+from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
@@ -40,9 +41,11 @@ def parts_through_ase(text: str, source: str) -> StructureParts | None:
         msg = f"looks like the format {name!r}, for which ASE is needed"
         raise StructureError(msg, where=source, hint="pip install ase") from error
     try:
-        with warnings.catch_warnings():
+        with warnings.catch_warnings(), tempfile.TemporaryDirectory() as folder:
             warnings.simplefilter("ignore")
-            atoms: Any = read_with_ase(io.StringIO(text), format=name)
+            path = Path(folder) / "structure"
+            path.write_text(text, encoding="utf-8")
+            atoms: Any = read_with_ase(path, format=name)
     except Exception as error:  # ASE raises whatever its parsers meet; told with the file's name
         msg = f"cannot be read as {name!r}: {type(error).__name__} {error}"
         raise StructureError(msg, where=source) from error

@@ -16,7 +16,9 @@ if TYPE_CHECKING:
 
 _LATTICE = re.compile(r"lattice\s*=\s*[\"'{]([^\"'}]*)[\"'}]", re.IGNORECASE)
 _PROPERTIES = re.compile(r"properties\s*=\s*\"?([^\s\"]+)", re.IGNORECASE)
-_START = re.compile(r"\s*\d+[ \t]*\n[^\n]*\n[ \t]*(?:[A-Za-z]|\d+[ \t]+[-+.\d])")
+_START = re.compile(
+    r"\s*\d+[ \t]*\n(?:[^\n]*(?:lattice|properties)\s*=|[^\n]*\n[ \t]*[A-Za-z\d]+(?:[ \t]+[-+.\d]+){3})", re.IGNORECASE
+)
 
 
 def looks_like_xyz(text: str) -> bool:

@@ -96,7 +96,8 @@ def warnings_near(crystal: Crystal, symprec: float) -> tuple[str, ...]:
 def displacements_to(crystal: Crystal, symmetry: CrystalSymmetry) -> NDArray[np.float64]:
     """Return how far each atom has to move to sit exactly where a group wants it.
 
-    Every atom goes to the mean of the places at which the operations of the group arrive; the cell is left as it is.
+    Every atom goes to the mean of the places at which the operations of the group arrive; the cell is left as it is, and
+    the crystal as a whole is not shifted.
 
     Returns
     -------
@@ -104,7 +105,8 @@ def displacements_to(crystal: Crystal, symmetry: CrystalSymmetry) -> NDArray[np.
         Displacements in Å, in the file's axes.
     """
     _, misses = atom_images_and_misses(crystal, symmetry)
-    return np.asarray(misses.mean(axis=0))
+    displacements = misses.mean(axis=0)
+    return np.asarray(displacements - displacements.mean(axis=0))
 
 
 def _symmetry_or_none(crystal: Crystal, symprec: float) -> CrystalSymmetry | None:

@@ -1,6 +1,7 @@
 """The lattices that pw.x of Quantum ESPRESSO builds from ``ibrav`` and six numbers.
 
-Source: the description of ``ibrav`` in INPUT_PW (from memory); the tests hold every lattice against ASE's own table.
+Source: the description of ``ibrav`` in INPUT_PW (from memory); the tests hold every lattice against the axes
+that pw.x 6.7 prints.
 """
 
 from __future__ import annotations

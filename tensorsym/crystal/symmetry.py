@@ -161,16 +161,16 @@ def _search(
     import spglib
 
     failure = getattr(spglib, "SpglibError", RuntimeError)
-    reason = ""
-    found = None
+    found, cause = None, None
     cell: Any = (lattice, positions, numbers)
     try:
         found = spglib.get_symmetry_dataset(cell, symprec=symprec, **_asks_for_reason())
     except failure as error:
-        reason = str(error)
+        cause = error
     if found is None:
-        msg = f"no symmetry found at symprec {symprec:g}: {reason or 'spglib gives no reason'}"
-        raise StructureError(msg, where=where, hint="try another symprec, and look for atoms that are too close")
+        msg = f"no symmetry found at symprec {symprec:g}: {cause or 'spglib gives no reason'}"
+        hint = "try another symprec, and look for atoms that are too close"
+        raise StructureError(msg, where=where, hint=hint) from cause
     return found
 
 
