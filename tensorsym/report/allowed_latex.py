@@ -25,7 +25,7 @@ def allowed_latex(form: AllowedForm) -> str:
     --------
     >>> from tensorsym.tasks.allowed import allowed
     >>> print(allowed_latex(allowed("4mm", "pyroelectric")))
-    % p_i, class 4mm; standard axes of the class: 4 along z, m perpendicular to x, m perpendicular to (1,1,0)
+    % pyroelectric, class 4mm; standard axes of the class: 4 along z, m perpendicular to x, m perpendicular to (1,1,0)
     p = \begin{pmatrix}
       0 & 0 & p_{3}
     \end{pmatrix}

@@ -73,8 +73,6 @@ class TensorVerdict:
     """The tensor as given, shape (3,) * rank, in `axes`, read-only."""
     unit: str
     """Unit of the values."""
-    symmetrised: NDArray[np.float64]
-    """The closest allowed tensor, same shape, unit and axes, read-only."""
     residual: float
     """``||T - <T>|| / ||T||`` over all components; 0 for a tensor that is exactly zero."""
     size: float
@@ -94,14 +92,14 @@ class TensorVerdict:
     @property
     def verdict(self) -> str:
         """``unconstrained`` (symmetry leaves every component free), ``consistent`` or ``inconsistent``."""
-        within = self.residual <= self.threshold.relative or self.size * self.residual <= self.threshold.absolute
-        free = self.space.dimension == len(self.space.components.words)
-        return "inconsistent" if not within else "unconstrained" if free else "consistent"
+        if not self.is_consistent:
+            return "inconsistent"
+        return "unconstrained" if self.space.dimension == len(self.space.components.words) else "consistent"
 
     @property
     def is_consistent(self) -> bool:
         """False when the deviation is larger than the noise."""
-        return self.verdict != "inconsistent"
+        return self.residual <= self.threshold.relative or self.size * self.residual <= self.threshold.absolute
 
     @property
     def space(self) -> InvariantSpace:
@@ -112,6 +110,13 @@ class TensorVerdict:
     def certificate(self) -> Certificate:
         """The number of independent components by two roads."""
         return self.space.certificate
+
+    @cached_property
+    def symmetrised(self) -> NDArray[np.float64]:
+        """The closest allowed tensor, same shape, unit and axes as `values`, read-only."""
+        standard = turned(self.values, self.turn.T)
+        basis = orthonormal_basis(self.group, self.row.kind)
+        return read_only(turned(projected(standard, basis), self.turn))
 
     @cached_property
     def placed_space(self) -> InvariantSpace:
@@ -180,9 +185,7 @@ def check_tensor(
     axes = axes or file_axes(crystal)
     turn = axes.matrix @ frame.T
     basis = orthonormal_basis(group, row.kind)
-    symmetrised = turned(projected(turned(tensor, turn.T), basis), turn)
-    size = _norm(tensor)
-    residual = _norm(tensor - symmetrised) / size if size else 0.0
+    residual, size = _residual(tensor, turn, basis)
     share = 1.0 - len(basis) / tensor.size
     threshold = noise_threshold(
         size,
@@ -202,7 +205,6 @@ def check_tensor(
         turn,
         read_only(tensor),
         unit or row.unit,
-        read_only(symmetrised),
         residual,
         size,
         threshold,
@@ -213,14 +215,11 @@ def check_tensor(
 def verdict_on(verdict: TensorVerdict, values: NDArray[np.float64]) -> TensorVerdict:
     """Return the verdict on other numbers for the same class, property and axes, with no noise stated."""
     group, row, turn = verdict.group, verdict.row, verdict.turn
-    symmetrised = turned(projected(turned(values, turn.T), orthonormal_basis(group, row.kind)), turn)
-    size = _norm(values)
-    residual = _norm(values - symmetrised) / size if size else 0.0
+    residual, size = _residual(values, turn, orthonormal_basis(group, row.kind))
     threshold = noise_threshold(size, values.size, 1.0)
     return replace(
         verdict,
         values=read_only(values),
-        symmetrised=read_only(symmetrised),
         residual=residual,
         size=size,
         threshold=threshold,
@@ -279,9 +278,14 @@ def _full_sigma(sigma: ArrayLike, row: Property, order: str) -> NDArray[np.float
     return spread
 
 
-def _norm(tensor: NDArray[np.float64]) -> float:
-    flat = tensor.reshape(-1)
-    return math.sqrt(float(flat @ flat))
+def _residual(
+    tensor: NDArray[np.float64], turn: NDArray[np.float64], basis: NDArray[np.float64]
+) -> tuple[float, float]:
+    """Return the relative residual and the norm of a tensor, both found in the standard frame."""
+    flat = turned(tensor, turn.T).reshape(-1)
+    outside = flat - (basis @ flat) @ basis
+    size = math.sqrt(flat.dot(flat))
+    return math.sqrt(outside.dot(outside)) / size if size else 0.0, size
 
 
 def _offences(verdict: TensorVerdict) -> tuple[Offence, ...]:

@@ -44,6 +44,7 @@ def pair_order(text: str) -> tuple[tuple[int, int], ...]:
     return _pair_order(text)
 
 
+@lru_cache(maxsize=512)
 def matrix_shape(kind: TensorKind) -> tuple[int, ...]:
     """Return the shape of a kind in matrix notation: 6 for every pair, 3 for every other index.
 

@@ -55,7 +55,9 @@ def test_planted_mistakes():
             continue
         seen += 1
         found = []
-        times.append(seconds(lambda verdict=verdict, case=case, found=found: found.append(diagnose(verdict, case.crystal))))
+        times.append(
+            seconds(lambda verdict=verdict, case=case, found=found: found.append(diagnose(verdict, case.crystal)))
+        )
         if explained(case, verdict, found[0]):
             named += 1
         else:

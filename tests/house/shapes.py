@@ -15,7 +15,7 @@ FUNCTION_LINES = 50
 
 EMPTY_MODULE_NAMES = frozenset({"common", "helper", "helpers", "misc", "util", "utils"})
 EMPTY_PREFIXES = ("get_", "handle_", "process_")
-FOREIGN_HOOKS = frozenset({"get_command"})
+FOREIGN_HOOKS = frozenset({"get_command", "get_help"})
 """Methods that click calls by this name when a group of commands loads lazily."""
 
 Function = ast.FunctionDef | ast.AsyncFunctionDef
