@@ -9,7 +9,7 @@ from tensorsym.invariants.characters import invariant_count
 from tensorsym.invariants.solver import invariant_space
 from tensorsym.tensors.kind import TensorKind
 from tensorsym.tensors.law import parse_law
-from tests.truths.float_groups import float_count, float_group
+from tests.truths.float_groups import float_count
 from tests.truths.reading import rows
 
 LAWS = {
@@ -50,7 +50,7 @@ def test_count_is_that_of_the_table(name, column, count):
 @pytest.mark.parametrize(("name", "column", "count"), FACTS)
 def test_table_is_counted_again(name, column, count):
     """A floating-point group average, built without the package's groups, gives the number of the table."""
-    assert float_count(float_group(standard_point_group(name).setting), parse_law(*LAWS[column]).kind) == count
+    assert float_count(standard_point_group(name).setting, parse_law(*LAWS[column]).kind) == count
 
 
 @pytest.mark.parametrize(("place", "name", "rank", "symmetry", "count"), TABLES_D)

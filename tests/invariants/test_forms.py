@@ -102,7 +102,7 @@ def test_printed_form_is_invariant_in_floating_point(form):
 @pytest.mark.parametrize("form", FORMS, ids=repr)
 def test_printed_form_is_complete_in_floating_point(form):
     """The handbook's independent components are as many as a floating-point group average leaves."""
-    assert len(form.symbols) == float_count(float_group(form.setting), law_of(form).kind)
+    assert len(form.symbols) == float_count(form.setting, law_of(form).kind)
 
 
 @pytest.mark.parametrize("form", FORMS, ids=repr)

@@ -101,23 +101,32 @@ def index_symmetric_basis(kind):
     return np.array(list(kept.values())).reshape(-1, *(3,) * rank)
 
 
-def group_average(matrices, kind):
-    """Return ``(1/|G|) sum of D(g)`` on the orthonormal basis of a kind, and that basis, flat."""
-    basis = index_symmetric_basis(kind)
-    flat = basis.reshape(len(basis), -1)
-    total = sum(
-        with_parity(matrix, kind) * moved(basis, matrix).reshape(len(basis), -1) @ flat.T for matrix in matrices
-    )
-    return total / len(matrices), flat
+@lru_cache(maxsize=256)
+def tensor_average(setting, rank, axial):
+    """Return the average over a group of the Kronecker power ``R x R x ...``, shape (3**rank, 3**rank)."""
+    matrices = float_group(setting)
+    signs = np.rint(np.linalg.det(matrices)) if axial else np.ones(len(matrices))
+    left, right = (_powers(matrices, part) for part in (rank // 2, rank - rank // 2))
+    mean = np.einsum("gij,gkl->ikjl", left * signs[:, None, None] / len(matrices), right, optimize=True)
+    return mean.reshape(3**rank, 3**rank)
 
 
-def float_projector(matrices, kind):
+def _powers(matrices, rank):
+    powers = np.ones((len(matrices), 1, 1))
+    for _ in range(rank):
+        size = 3 * powers.shape[1]
+        powers = np.einsum("gij,gkl->gikjl", powers, matrices).reshape(-1, size, size)
+    return powers
+
+
+def float_projector(setting, kind):
     """Return the orthogonal projector onto the invariants of a kind, shape (3**rank, 3**rank)."""
-    average, flat = group_average(matrices, kind)
-    return flat.T @ average @ flat
+    flat = index_symmetric_basis(kind).reshape(-1, 3**kind.rank)
+    return flat.T @ flat @ tensor_average(setting, kind.rank, kind.axial)
 
 
-def float_count(matrices, kind):
+def float_count(setting, kind):
     """Return the number of invariants as the rank of the averaged representation."""
-    average, _ = group_average(matrices, kind)
+    flat = index_symmetric_basis(kind).reshape(-1, 3**kind.rank)
+    average = flat @ tensor_average(setting, kind.rank, kind.axial) @ flat.T
     return int(np.linalg.matrix_rank(average, tol=1e-6)) if average.size else 0
