@@ -159,7 +159,7 @@ def closest_frame(x: NDArray[np.float64], z: NDArray[np.float64]) -> NDArray[np.
     """
     x = x / np.sqrt((x * x).sum(axis=1))[:, None]
     z = z / np.sqrt((z * z).sum(axis=1))[:, None]
-    # The weight of y = z x x in the trace is the triple product (z x x).t = z.(x x t), so y is built for the best alone.
+    # The weight of y = z x x in the trace is a triple product, (z x x).t = z.(x x t): y is built for the best alone.
     closeness = x @ _TIES[0] + z @ _TIES[2] + ((x @ _CROSS_WITH_Y) * z).sum(axis=1)
     best = int(np.argmax(closeness))
     (a, b, c), (d, e, f) = x[best].tolist(), z[best].tolist()

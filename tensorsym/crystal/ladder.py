@@ -96,8 +96,8 @@ def warnings_near(crystal: Crystal, symprec: float) -> tuple[str, ...]:
 def displacements_to(crystal: Crystal, symmetry: CrystalSymmetry) -> NDArray[np.float64]:
     """Return how far each atom has to move to sit exactly where a group wants it.
 
-    Every atom goes to the mean of the places at which the operations of the group arrive; the cell is left as it is, and
-    the crystal as a whole is not shifted.
+    Every atom goes to the mean of the places at which the operations of the group arrive. The cell is left as it is,
+    and the crystal as a whole is not shifted.
 
     Returns
     -------

@@ -142,6 +142,7 @@ def _direction(opening: str, body: str, closing: str, text: str) -> MillerDirect
 def _indices(body: str) -> list[int]:
     """Return the whole numbers of ``1-10``, ``1 -1 0`` or ``1,-1,0``; an empty list if there is anything else."""
     plain = _MINUS.sub("-", _BAR.sub(r"-\1", body)).strip()
-    apart = re.split(r"[\s,]+", plain)
-    parts = apart if len(apart) > 1 else re.findall(r"[+-]?\d|.", plain)
+    parts = re.split(r"[\s,]+", plain)
+    if len(parts) < 3:
+        parts = re.findall(r"[+-]?\d|.", "".join(parts))
     return [int(part) for part in parts] if all(re.fullmatch(r"[+-]?\d{1,3}", part) for part in parts) else []

@@ -32,7 +32,7 @@ def cif(sites, symmetry="_space_group_name_H-M_alt 'P 1'", name="a", c="4.0"):
 
 @pytest.mark.parametrize("seed", range(10))
 def test_axes_are_ours(seed):
-    """c lies along z, a in the xz plane on the side of x, b makes the set right-handed, and the cell is as given."""
+    """Axis c lies along z, a in the xz plane on the side of x, the set is right-handed, and the cell is as given."""
     random = np.random.default_rng(seed)
     lengths, angles = random.uniform(2, 9, 3), random.uniform(70, 115, 3)
     a, b, c = cell_in_our_axes(*lengths, *angles)

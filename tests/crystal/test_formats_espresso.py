@@ -67,7 +67,8 @@ def test_cosines_are_put_in_their_places():
     body = "\nnat=1, ntyp=1\n/\nATOMIC_SPECIES\nPo 1 a\nATOMIC_POSITIONS crystal\nPo 0 0 0\n"
     one = crystal_in_text(f"&SYSTEM\nibrav=-12, A=3.0, B=4.0, C=5.0, cosAC=-0.2{body}", "file")
     other = crystal_in_text(
-        f"&SYSTEM\nibrav=-12, celldm(1)={3 / BOHR:.12f}, celldm(2)={4 / 3:.12f}, celldm(3)={5 / 3:.12f}, celldm(5)=-0.2{body}",
+        f"&SYSTEM\nibrav=-12, celldm(1)={3 / BOHR:.12f}, celldm(2)={4 / 3:.12f}, celldm(3)={5 / 3:.12f}, "
+        f"celldm(5)=-0.2{body}",
         "file",
     )
 

@@ -17,7 +17,7 @@ BASES = [pytest.param(None, id="own-cell"), pytest.param(SKEW, id="skew"), pytes
 @pytest.mark.parametrize("seed", [1, 2])
 @pytest.mark.parametrize("name", CLASSES)
 def test_frame_puts_the_class_onto_the_crystal(name, seed, basis):
-    """In any orientation and cell the operations of the standard group, turned by the frame, are those that were built in."""
+    """In any orientation and cell the standard operations, turned by the frame, are those that were built in."""
     turn = random_turn(seed)
     symmetry = crystal_of_class(name, turn, basis).symmetry
 

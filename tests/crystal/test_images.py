@@ -45,5 +45,5 @@ def test_misses_sum_to_the_way_back():
 
 def test_supercell_that_breaks_the_class_has_no_images():
     """Atoms of such a supercell cannot be followed, and the error says what to give instead."""
-    with pytest.raises(StructureError, match="supercell whose shape breaks the class.*primitive"):
+    with pytest.raises(StructureError, match=r"supercell whose shape breaks the class.*primitive"):
         atom_images(rock_salt(copies=(1, 1, 2)))

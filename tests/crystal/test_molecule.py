@@ -5,8 +5,8 @@ import pytest
 
 from tensorsym.crystal.molecule import molecule_in_box
 from tensorsym.errors import StructureError
-from tests.crystal.synthetic import CLASSES, largest_gap, matrices_of_class, random_turn
 from tensorsym.groups.point_group import standard_point_group
+from tests.crystal.synthetic import CLASSES, largest_gap, matrices_of_class, random_turn
 
 
 def molecule_of_class(name, turn):

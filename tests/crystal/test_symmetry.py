@@ -19,7 +19,7 @@ STRUCTURES = sorted((ROOT / "structures").glob("*.cif"))
 ROCK_SALT = [[0, 0, 0], [0, 0.5, 0.5], [0.5, 0, 0.5], [0.5, 0.5, 0]]
 
 
-def rock_salt(edge=5.64, primitive=False, copies=(1, 1, 1)):
+def rock_salt(edge=5.64, *, primitive=False, copies=(1, 1, 1)):
     """Return rock salt in its cubic cell, in its primitive cell, or in a supercell."""
     if primitive:
         return Crystal(
@@ -97,7 +97,7 @@ def test_left_handed_cell_keeps_its_space_group():
 
 
 def test_reason_of_failure_is_told():
-    """spglib's own reason is in the error, and its error is the cause."""
+    """Spglib's own reason is in the error, and its error is the cause."""
     crystal = rock_salt()
     crystal.positions.setflags(write=True)
     crystal.positions[1] = crystal.positions[0]

@@ -27,6 +27,24 @@ def rows(items, form="{:.10f}"):
     return "\n".join(" ".join(form.format(value) for value in item) for item in items)
 
 
+def scaled(vector, unit):
+    """Return a vector in another unit."""
+    return [value / unit for value in vector]
+
+
+def numbered(form, items):
+    """Return one line for each item, `form` filled with its number from 1 and its text."""
+    return "\n".join(form.format(number=number, text=text) for number, text in enumerate(items, 1))
+
+
+def labelled(form, unit=1.0):
+    """Return one line for each atom, `form` filled with its number, label and coordinates."""
+    return "\n".join(
+        form.format(number=number, label=label, text=rows([scaled(cartesian(place), unit)]))
+        for number, (label, place) in enumerate(PLACES, 1)
+    )
+
+
 CIF = f"""# wurtzite
 data_ZnO
 _chemical_name_common 'zinc oxide'
@@ -121,20 +139,20 @@ PW_OUTPUT = f"""
      lattice parameter (alat)  =  {ALAT:.8f}  a.u.
      number of atoms/cell      =            4
      crystal axes: (cart. coord. in units of alat)
-{"".join(f"       a({number}) = ( {rows([[value / A for value in vector]], '{:.8f}')} ){chr(10)}" for number, vector in enumerate(VECTORS, 1))}
+{numbered("       a({number}) = ( {text} )", [rows([scaled(vector, A)]) for vector in VECTORS])}
      Cartesian axes
 
      site n.     atom                  positions (alat units)
-{"".join(f"   {number}  {label}  tau(   {number}) = ( {rows([[value / A for value in cartesian(place)]], '{:.8f}')} ){chr(10)}" for number, (label, place) in enumerate(PLACES, 1))}
+{labelled("   {number}  {label}  tau(   {number}) = ( {text} )", A)}
 """
 
 PW_XML = f"""<?xml version="1.0" encoding="UTF-8"?>
 <qes:espresso xmlns:qes="http://www.quantum-espresso.org/ns/qes/qes-1.0">
  <input><atomic_structure nat="4" alat="{ALAT}">
   <atomic_positions>
-{"".join(f'<atom name="{label}" index="{number}">{rows([[value / BOHR for value in cartesian(place)]])}</atom>' for number, (label, place) in enumerate(PLACES, 1))}
+{labelled('<atom name="{label}" index="{number}">{text}</atom>', BOHR)}
   </atomic_positions>
-  <cell>{"".join(f"<a{number}>{rows([[value / BOHR for value in vector]])}</a{number}>" for number, vector in enumerate(VECTORS, 1))}</cell>
+  <cell>{numbered("<a{number}>{text}</a{number}>", [rows([scaled(vector, BOHR)]) for vector in VECTORS])}</cell>
  </atomic_structure></input>
 </qes:espresso>
 """
