@@ -52,12 +52,21 @@ def _matrix(form: AllowedForm) -> list[str]:
     if not form.independent or size >= LARGEST_GRID:
         return []
     grids = matrix_grids(form.kind, shape, lambda position: combination_text(form.entry(position)))
-    factors = [
-        f"{factor} on shear digits of pair {number + 1}" for number, factor in enumerate(form.factors) if factor != 1
-    ]
-    if factors:
-        grids.append(f"matrix entry = tensor component x {', x '.join(factors)}")
+    if any(factor != 1 for factor in form.factors):
+        grids.append(_factors(form))
     return grids
+
+
+def _factors(form: AllowedForm) -> str:
+    """Return how matrix entries follow from tensor components."""
+    weights = [
+        f"{factor} for each shear digit (4, 5, 6) of pair {number}"
+        if len(form.factors) > 1
+        else f"{factor} for a shear digit (4, 5, 6)"
+        for number, factor in enumerate(form.factors, 1)
+        if factor != 1
+    ]
+    return paragraph("matrix entry = tensor component times", weights)
 
 
 def _counts(form: AllowedForm) -> str:

@@ -75,11 +75,11 @@ def axis_labels(kind: TensorKind) -> list[tuple[str, ...]]:
 
 
 def _grid(cells: list[list[str]], side: Sequence[str], top: Sequence[str], title: str) -> str:
-    width = max(6, *(len(cell) for row in cells for cell in row)) + 2
+    """Return one grid; columns are as wide as what stands in them, so that six fit the screen."""
+    widths = [max(5, *(len(row[column]) for row in cells)) + 2 for column in range(len(top))]
     edge = max(len(label) for label in side) + 4
     lines = [f"    {title}"] if title else []
-    lines.append(" " * edge + "".join(label.rjust(width) for label in top))
-    lines += [
-        label.rjust(edge) + "".join(cell.rjust(width) for cell in row) for label, row in zip(side, cells, strict=True)
-    ]
+    lines.append(" " * edge + "".join(label.rjust(width) for label, width in zip(top, widths, strict=True)))
+    for label, row in zip(side, cells, strict=True):
+        lines.append(label.rjust(edge) + "".join(cell.rjust(width) for cell, width in zip(row, widths, strict=True)))
     return "\n".join(line.rstrip() for line in lines)
