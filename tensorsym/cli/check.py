@@ -24,6 +24,7 @@ from tensorsym.cli.options import SYMPREC, format_option
 @click.option(
     "--write", "target", type=click.Path(dir_okay=False), metavar="PATH", help="Save symmetrised tensors here."
 )
+@click.option("--accept", type=click.IntRange(min=1), metavar="N", help="Apply explanation N before symmetrising.")
 @click.option("--force", is_flag=True, help="Let --write replace a file.")
 @SYMPREC
 @format_option("text", "json")
@@ -37,6 +38,7 @@ def command(
     sigma: float | None,
     tolerance: float | None,
     target: str | None,
+    accept: int | None,
     force: bool,  # noqa: FBT001  click passes options by name
     symprec: float,
     style: str,
@@ -63,10 +65,13 @@ def command(
         tolerance=tolerance,
         symprec=symprec,
     )
+    if accept is not None and not target:
+        msg = "--accept needs --write PATH"
+        raise click.UsageError(msg)
     if target:
         from tensorsym.tasks.mend import write_symmetrised
 
-        write_symmetrised(report, target, force=force)
+        write_symmetrised(report, target, accept=accept, force=force)
     if style == "json":
         from tensorsym.report.check_json import check_document
 

@@ -122,6 +122,8 @@ def _real_vectors(orbits: PhasedOrbits, spelled: Sequence[Sequence[int]], base: 
     times -1 for every place in both. So a component with an even number of y belongs to the real part, one with an
     odd number to the imaginary part. `spelled` holds the indices of each component; words have `base` letters.
     """
+    if not spelled:  # antisymmetry in more than three indices leaves no component
+        return []
     survivors = _survivors(orbits, len(spelled[0]), base)
     vectors: dict[tuple[int, int], Vector] = {}
     for number, indices in enumerate(spelled):

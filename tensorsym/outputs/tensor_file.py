@@ -92,12 +92,15 @@ def _record(document: Any, source: str) -> TensorRecord:
         order=str(order) if notation == "voigt" else "",
         digits=_last_place(document["values"]),
         sigma=spread,
+        per_site=values.ndim > row.kind.rank,
     )
 
 
 def _tensor(values: Any, row: Property, notation: str, order: str, source: str) -> NDArray[np.float64]:
     array = np.array(_numbers(values, source, "values", ()), dtype=float)
     shapes = {"voigt": matrix_shape(row.kind), "full": (3,) * row.kind.rank}
+    if notation == "full" and row.site and array.shape[1:] == shapes["full"]:
+        return array
     if notation not in shapes:
         msg = f"notation {notation!r}"
         raise TensorFileError(msg, where=source, expected="voigt or full")

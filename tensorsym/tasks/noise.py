@@ -17,8 +17,8 @@ are symmetrised, however many digits are printed.
 """
 
 WORKING_SIZE = {
-    ("piezoelectric-stress", "C/m^2"): 1e-3,
-    ("piezoelectric-stress", "e angstrom"): 5e-3,
+    ("piezoelectric-stress", "C/m^2"): 2e-4,
+    ("piezoelectric-stress", "e angstrom"): 2e-3,
     ("born-charge", "e"): 5e-3,
     ("dielectric", "1"): 2e-3,
     ("elastic-stiffness", "kbar"): 5.0,
