@@ -142,6 +142,17 @@ def test_isotropic_like_form_of_the_cube():
     assert [space.components.digits[number] for number in space.free] == ["1111", "1122", "1212", "1221"]
 
 
+@pytest.mark.parametrize("group", ALL_SETTINGS, ids=setting_of)
+def test_antisymmetry_in_four_indices_leaves_nothing(group):
+    """Four indices cannot all differ in three dimensions, so a totally antisymmetric rank 4 has no component at all."""
+    swaps = ((1, 0, 2, 3), (0, 2, 1, 3), (0, 1, 3, 2))
+    space = invariant_space(group, TensorKind(4, permutations=tuple((swap, -1) for swap in swaps)))
+
+    assert space.dimension == 0
+    assert space.certificate.agree
+    assert space.basis().shape == (0, 3, 3, 3, 3)
+
+
 def test_coefficients_are_exact():
     """Coefficients are Fractions, so c66 is (c11 - c12)/2 and not nearly."""
     space = invariant_space(point_group_in_setting("321"), KINDS["elastic"])

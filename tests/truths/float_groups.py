@@ -126,7 +126,7 @@ def float_projector(setting, kind):
 
 
 def float_count(setting, kind):
-    """Return the number of invariants as the rank of the averaged representation."""
+    """Return the number of invariants as the rank of the averaged representation, whose eigenvalues are 0 and 1."""
     flat = index_symmetric_basis(kind).reshape(-1, 3**kind.rank)
     average = flat @ tensor_average(setting, kind.rank, kind.axial) @ flat.T
-    return int(np.linalg.matrix_rank(average, tol=1e-6)) if average.size else 0
+    return int(np.sum(np.linalg.eigvalsh(average) > HALF))
