@@ -45,7 +45,7 @@ def cause_of(document, name, key):
     first = diagnose(verdict, crystal).explanations[0]
     kind = first.kind
     if kind == "axes":
-        kind = "axes renamed" if "renamed" in first.axes.words else f"axes: {first.axes.name}"
+        kind = f"axes: {first.axes.name}"
     return kind, first.residual_after
 
 

@@ -17,6 +17,9 @@ if TYPE_CHECKING:
 
     from tensorsym.tasks.diagnose.case import Case
 
+SPELLED = {"file": "structure's own", "ieee": "IEEE 176", "international": "International Tables"}
+"""Axes that the command line knows by name, and what they are called."""
+
 NAMED_CHOICES = 4.0
 RENAMED_CHOICES = 24.0
 
@@ -54,8 +57,8 @@ def axes_explanations(case: Case, named: Sequence[Axes], frame: NDArray[np.float
     for axes in named:
         for renaming in renamings[1:]:
             matrix = read_only(renaming @ axes.matrix)
-            words = f"the {axes.name} axes renamed: {renaming_in_words(renaming)}"
-            candidates.append((Axes(axes.name, matrix, words), RENAMED_CHOICES * NAMED_CHOICES))
+            name = f"{SPELLED.get(axes.name, axes.name)} renamed"
+            candidates.append((Axes(name, matrix, renaming_in_words(renaming)), RENAMED_CHOICES * NAMED_CHOICES))
     matrices = np.array([axes.matrix for axes, _ in candidates])
     residuals = case.residuals(case.values, matrices @ frame.T)
     return [
@@ -79,10 +82,16 @@ def renaming_in_words(renaming: NDArray[np.float64]) -> str:
 
 def _explanation(case: Case, axes: Axes, choices: float, residual: float) -> Explanation:
     before = case.verdict.residual
+    if axes.name in SPELLED:
+        sentence = f"the numbers are in the {SPELLED[axes.name]} axes: {axes.words}"
+        change = f"read them with --axes {axes.name}"
+    else:
+        sentence = f"the numbers are in other axes, {axes.name}: {axes.words}"
+        change = "accept this explanation, or state these axes in the tensor file"
     return Explanation(
         kind="axes",
-        sentence=f"the numbers are in other axes: {axes.words}",
-        change=f"read the tensor in these axes: {axes.name}, {axes.words}",
+        sentence=sentence,
+        change=change,
         residual_before=before,
         residual_after=residual,
         evidence=evidence(before, residual, case.floor, case.constraints, 0, choices),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -26,14 +27,19 @@ def named_axes(crystal: Crystal) -> list[Axes]:
     cell of the file and for the standard cell.
     """
     lattice = crystal.lattice
-    candidates = [axes_for(crystal, "file"), axes_for(crystal, "ieee"), axes_for(crystal, "international")]
+    candidates = [_told_shortly(axes_for(crystal, name), crystal) for name in ("file", "ieee", "international")]
     for name, matrix in (("a along x, b in xy", _a_along_x(lattice)), ("c along z, a in xz", _c_along_z(lattice))):
-        candidates.append(Axes(name, read_only(matrix), f"{name} ({words_for(matrix, crystal)})"))
+        candidates.append(Axes(name, read_only(matrix), partial(words_for, matrix, crystal)))
     kept: list[Axes] = []
     for axes in candidates:
         if all(np.abs(axes.matrix - other.matrix).max() > SAME for other in kept):
             kept.append(axes)
     return kept
+
+
+def _told_shortly(axes: Axes, crystal: Crystal) -> Axes:
+    """Return the axes told by crystal directions alone, found only when read."""
+    return Axes(axes.name, axes.matrix, partial(words_for, axes.matrix, crystal))
 
 
 def _a_along_x(lattice: NDArray[np.float64]) -> NDArray[np.float64]:
