@@ -45,7 +45,7 @@ class CheckReport:
 
     @cached_property
     def diagnoses(self) -> dict[int, Diagnosis]:
-        """What may be wrong with each inconsistent tensor, by its number in `verdicts`; site tensors are not diagnosed."""
+        """What may be wrong with each inconsistent tensor (not of a site), by its number in `verdicts`."""
         from tensorsym.tasks.diagnose.diagnosis import diagnose
 
         return {

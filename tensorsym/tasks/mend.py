@@ -7,7 +7,6 @@ from typing import TYPE_CHECKING, Any
 from tensorsym.errors import UsageError
 from tensorsym.outputs.record import TensorRecord
 from tensorsym.outputs.tensor_file import tensor_document, write_document
-
 from tensorsym.tasks.check import check_tensor
 
 if TYPE_CHECKING:

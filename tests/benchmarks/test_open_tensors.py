@@ -1,7 +1,7 @@
 """The published tensors of the open sets, every row diagnosed: the table of causes in the README comes from here.
 
-Sources: de Jong et al., Sci. Data 2 (2015) 150053 (piezoelectric) and 150009 (elastic); Petousis et al., Sci. Data 4 (2017)
-160134 (dielectric); as distributed with matminer 0.3.2 under a modified BSD licence.
+Sources: de Jong et al., Sci. Data 2 (2015) 150053 (piezoelectric) and 150009 (elastic); Petousis et al., Sci. Data 4
+(2017) 160134 (dielectric); as distributed with matminer 0.3.2 under a modified BSD licence.
 """
 
 from __future__ import annotations

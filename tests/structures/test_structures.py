@@ -47,7 +47,7 @@ def mass_of(label):
 
 @pytest.mark.parametrize("path", FILES, ids=lambda path: path.stem)
 def test_space_group_is_the_one_written(path):
-    """spglib finds the number that the file states, at 1e-3 angstrom and at 1e-4 as well."""
+    """The space group found is the one that the file states, at 1e-3 angstrom and at 1e-4 as well."""
     crystal = read(path)
 
     assert crystal.symmetry.number == written_number(path)
