@@ -89,7 +89,7 @@ AXIAL = (
 @lru_cache(maxsize=1024)
 def counted(group_class, kind):
     """Return the number of components by group average; rows of one kind share it."""
-    return float_count(float_group(SETTINGS.get(group_class, group_class)), kind)
+    return float_count(SETTINGS.get(group_class, group_class), kind)
 
 
 def strain_representation(matrix):
