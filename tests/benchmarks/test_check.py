@@ -51,9 +51,8 @@ def test_against_spglib_alone(rows):
             lambda copies=copies: [check_tensor(c, v, "piezoelectric-stress").is_consistent for c, v in copies]
         )
         ratios.append(ours / alone)
-    print(
-        f"\n{len(rows)} checks: {statistics.median(ratios):.2f} times spglib alone ({min(ratios):.2f} to {max(ratios):.2f})"
-    )
+    spread = f"{min(ratios):.2f} to {max(ratios):.2f}"
+    print(f"\n{len(rows)} checks: {statistics.median(ratios):.2f} times spglib alone ({spread})")
 
     assert statistics.median(ratios) <= 1.3
 
