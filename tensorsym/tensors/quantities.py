@@ -5,7 +5,7 @@ from __future__ import annotations
 import json
 from dataclasses import dataclass
 from functools import lru_cache
-from importlib import resources
+from pkgutil import get_data
 
 from tensorsym.errors import LawError, nearest_names
 
@@ -60,8 +60,7 @@ def quantity_named(name: str) -> Quantity:
 
 @lru_cache(maxsize=1)
 def _table() -> tuple[dict[str, Quantity], dict[str, str]]:
-    text = resources.files("tensorsym.tensors").joinpath("quantities.json").read_text(encoding="utf-8")
-    document = json.loads(text)
+    document = json.loads(get_data("tensorsym.tensors", "quantities.json") or b"")
     quantities = {
         name: Quantity(
             name=name,
