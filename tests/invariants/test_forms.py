@@ -105,19 +105,6 @@ def test_printed_form_is_complete_in_floating_point(form):
     assert len(form.symbols) == float_count(form.setting, law_of(form).kind)
 
 
-@pytest.mark.parametrize("form", FORMS, ids=repr)
-def test_printed_form_lies_in_our_space(form):
-    """Every printed tensor is the sum of our basis tensors, weighted by its own independent components."""
-    law = law_of(form)
-    space = invariant_space(point_group_in_setting(form.setting), law.kind)
-    tensors = printed_tensors(form, law)
-
-    first = [space.components.words[number] for number in space.free]
-    weights = tensors.reshape(len(tensors), 3**law.kind.rank)[:, first]
-
-    assert np.abs(np.tensordot(weights, space.basis(), axes=1) - tensors).max(initial=0.0) < 1e-12
-
-
 @pytest.mark.parametrize("form", MATRICES, ids=repr)
 def test_printed_matrix_has_the_index_symmetry(form):
     """The lower half of a printed matrix agrees with the upper one, with the factors of its shear digits."""

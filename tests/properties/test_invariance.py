@@ -47,7 +47,7 @@ def test_allowed_tensor_has_the_index_symmetry(group, kind, seed):
     assert all(np.array_equal(sign * tensor.transpose(order), tensor) for order, sign in kind.index_group)
 
 
-@settings(max_examples=150)
+@settings(max_examples=120)
 @given(groups(), kinds() | kinds(max_rank=5))
 def test_three_roads_to_the_dimension(group, kind):
     """Elimination, characters and the rank of a floating-point average agree for any index symmetry."""
