@@ -51,6 +51,6 @@ def read_tensors(
         If the file cannot be read as either.
     """
     text, source = text_of(path), str(path)
-    if text.lstrip()[:1] in ("{", "[") and '"' in text:
+    if text.lstrip()[:1] == "{" or (text.lstrip()[:1] == "[" and '"' in text):
         return read_tensor_document(text, source)
     return read_bare_matrix(text, source, property=property, order=order, unit=unit, atoms=atoms)

@@ -49,8 +49,8 @@ def stacked_equations(group, kind):
 def test_all_classes_and_rows_of_rank_four_and_more():
     """All classes times all catalogue rows of ranks 4 to 6 are solved 20 times faster than by dense null spaces.
 
-    The exact side solves every pair, each from empty caches. The dense side of ranks 5 and 6 takes a second a pair, so it
-    is timed on every fourth class and counted four times; only its decomposition is timed, not the set-up of its
+    The exact side solves every pair, each from empty caches. The dense side of ranks 5 and 6 takes a second a pair, so
+    it is timed on every fourth class and counted four times; only its decomposition is timed, not the set-up of its
     equations. Fourth-order elasticity (rank 8) is left to the exact side alone: dense equations would need gigabytes.
     """
     kinds = sorted({row.kind for row in all_properties() if row.kind.rank >= 4}, key=repr)

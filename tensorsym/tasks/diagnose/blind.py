@@ -72,11 +72,11 @@ def _generic(verdict: TensorVerdict) -> NDArray[np.float64]:
 
 def _notation_spots(case: Case) -> list[BlindSpot]:
     spots = []
-    orders = [explanation for explanation in order_explanations(case) if _is_unseen(case, explanation.values)]
+    orders = [item for item in order_explanations(case) if case.residual(item.values, case.turn) < UNSEEN]
     if orders:
-        spots.append(
-            BlindSpot("matrix-order", f"the order of the index pairs ({len(orders)} other orders fit as well)")
-        )
+        harmless = sum(not _is_unseen(case, item.values) for item in orders)
+        sentence = f"the order of the index pairs ({len(orders)} other orders fit, {harmless} of them without a change)"
+        spots.append(BlindSpot("matrix-order", sentence))
     shear = [explanation for explanation in shear_explanations(case) if _is_unseen(case, explanation.values)]
     if shear:
         spots.append(BlindSpot("shear-factor", "a factor of 2 on the shear entries"))
