@@ -8,6 +8,7 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from tensorsym.catalog.properties import Property, property_named
+from tensorsym.catalog.units import property_in_unit
 from tensorsym.crystal.directions import direction_namer
 from tensorsym.errors import ShapeError
 from tensorsym.groups.placement import element_in_words, elements_in_words
@@ -157,7 +158,7 @@ def check_tensor(
     values : array_like
         Shape (3,) * rank, or the shape of matrix notation.
     property : str or Property
-        Name in the catalogue.
+        Name in the catalogue; a family name such as ``piezoelectric`` means the member whose unit is given.
     axes : Axes, optional
         Axes of the components, seen from the structure's Cartesian axes.
     order : str
@@ -178,7 +179,7 @@ def check_tensor(
     UnknownNameError
         If no property has the name.
     """
-    row = property if isinstance(property, Property) else property_named(property)
+    row = property if isinstance(property, Property) else property_in_unit(property_named(property), unit)
     tensor = full_tensor(values, row, order)
     spread = None if sigma is None else _full_sigma(sigma, row, order)
     group, frame = crystal.symmetry.group, crystal.symmetry.frame

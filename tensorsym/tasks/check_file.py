@@ -149,7 +149,10 @@ def _chosen(records: Sequence[TensorRecord], property: str | None, where: str) -
     from tensorsym.catalog.properties import property_named
 
     row = property_named(property)
+    family = row.name.split("-")[0]
     chosen = [record for record in records if record.property == row.name]
+    # A family name such as piezoelectric takes the members that the file holds.
+    chosen = chosen or [record for record in records if record.property.split("-")[0] == family == row.name]
     if not chosen:
         held = ", ".join(dict.fromkeys(record.property for record in records))
         msg = f"no tensor of {row.name} in {where}"
