@@ -74,7 +74,8 @@ def axes_for(crystal: Crystal, spec: str) -> Axes:
         return Axes("file", _IDENTITY, partial(_file_words, crystal))
     if name == "ieee":
         matrix = read_only(ieee_matrix(crystal.symmetry))
-        return Axes("ieee", matrix, partial(_told, matrix, crystal, f"IEEE Std 176-1987; {SENSES_OPEN}"))
+        senses = "" if crystal.point_group.is_centrosymmetric else f"; {SENSES_OPEN}"
+        return Axes("ieee", matrix, partial(_told, matrix, crystal, f"IEEE Std 176-1987{senses}"))
     if name == "international":
         matrix = read_only(international_matrix(crystal.symmetry))
         return Axes("international", matrix, partial(_told, matrix, crystal, INTERNATIONAL_WORDS))

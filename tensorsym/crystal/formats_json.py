@@ -105,7 +105,13 @@ def _of_lines(text: str, source: str, index: int | None) -> StructureParts:
     lines = [(number, line) for number, line in enumerate(text.splitlines(), 1) if line.strip()]
     notes: list[str] = []
     number, line = lines[chosen(range(len(lines)), index, source, "document", notes)]
-    parts = read_json(line, f"{source}, line {number}")
+    where = f"{source}, line {number}"
+    try:
+        document = json.loads(line)
+    except (ValueError, RecursionError) as error:
+        msg = f"is no JSON document: {error}"
+        raise StructureError(msg, where=where) from error
+    parts = parts_in_document(document, where)
     return replace(parts, notes=(*notes, *parts.notes))
 
 

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 from tensorsym.crystal.numbers_in import CUT_OFF, chosen, line_number, numbers_in
 from tensorsym.crystal.parts import StructureParts
+from tensorsym.crystal.validation import MOST_ATOMS
 from tensorsym.errors import StructureError
 
 if TYPE_CHECKING:
@@ -67,6 +68,9 @@ def _species(text: str, source: str) -> list[str]:
     if not counts or not names:
         raise StructureError("holds no species and numbers of ions", where=source, hint=CUT_OFF)
     numbers = [int(word) for word in counts[1].split()]
+    if sum(numbers) > MOST_ATOMS:
+        msg = f"{sum(numbers)} ions are too many"
+        raise StructureError(msg, where=f"{source}, line {line_number(text, counts.start())}")
     if len(names) < len(numbers):
         msg = f"names {len(names)} species for {len(numbers)} types of ions"
         raise StructureError(msg, where=f"{source}, line {line_number(text, counts.start())}")

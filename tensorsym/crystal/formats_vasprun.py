@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import re
 import xml.etree.ElementTree as ET
 from typing import TYPE_CHECKING
 
@@ -70,8 +71,9 @@ def xml_elements(text: str, source: str, *, stop_at_break: bool = False) -> Iter
         raise StructureError(
             "the XML declares a document type or entities", where=source, hint="delete the declaration"
         )
+    body = re.sub(r"\A\s*<\?xml[^>]*\?>", "", text)  # the declared encoding has been undone with the file
     try:
-        for _, element in ET.iterparse(io.BytesIO(text.encode("utf-8"))):  # noqa: S314  entities are refused above
+        for _, element in ET.iterparse(io.BytesIO(body.encode("utf-8"))):  # noqa: S314  entities are refused above
             yield element
     except ET.ParseError as error:
         if not stop_at_break:

@@ -27,6 +27,9 @@ SAME_PLACE = 1e-3
 THINNEST_CELL = 2.5 * TOO_CLOSE
 """Å. A cell whose lattice planes are closer than this has no volume to speak of."""
 
+LONGEST_EDGE = 1e4
+"""Å. A cell edge longer than this is in a wrong unit."""
+
 
 def checked_lattice(values: ArrayLike, where: str | None) -> NDArray[np.float64]:
     """Return the lattice as a read-only array of shape (3, 3), rows a, b, c in Å.
@@ -34,7 +37,7 @@ def checked_lattice(values: ArrayLike, where: str | None) -> NDArray[np.float64]
     Raises
     ------
     StructureError
-        If it is no such array, holds a number that is not finite, or spans no volume.
+        If it is no such array, holds a number that is not finite, spans no volume, or is too large.
     """
     lattice = _finite(values, "lattice", where)
     if lattice.shape != (3, 3):
@@ -45,6 +48,9 @@ def checked_lattice(values: ArrayLike, where: str | None) -> NDArray[np.float64]
     if not volume > 1e-9 * float(edges.prod()) or float(plane_distances(lattice).min()) < THINNEST_CELL:
         msg = f"the lattice vectors span no proper cell: volume {volume:.3g} Å^3, edges {_listed(edges)} Å"
         raise StructureError(msg, where=where, hint="check the lattice vectors and their unit (Å)")
+    if float(edges.max()) > LONGEST_EDGE:
+        msg = f"cell edges of {_listed(edges)} Å"
+        raise StructureError(msg, where=where, expected=f"at most {LONGEST_EDGE:g} Å", hint="check the unit")
     return lattice
 
 

@@ -15,6 +15,7 @@ BAD = [
     pytest.param(np.eye(2), PLACES, SPECIES, r"lattice of shape \(2, 2\).*three vectors", id="lattice-shape"),
     pytest.param([[4, 0, 0], [0, 4, 0], [4, 4, 0]], PLACES, SPECIES, "span no proper cell: volume 0", id="flat"),
     pytest.param(np.zeros((3, 3)), PLACES, SPECIES, "span no proper cell", id="zero"),
+    pytest.param(1e9 * CUBE, PLACES, SPECIES, r"cell edges of .* at most 10000 Å; check the unit", id="huge"),
     pytest.param([[4, 0, 0], [0, NAN, 0], [0, 0, 4]], PLACES, SPECIES, r"not finite, at \(2, 2\)", id="lattice-nan"),
     pytest.param(CUBE, [[0, 0, 0], [0, np.inf, 0]], SPECIES, r"positions .*not finite, at \(2, 2\)", id="position-inf"),
     pytest.param(CUBE, PLACES, ("Cs",), r"positions of shape \(2, 3\) for 1 species", id="count"),

@@ -101,6 +101,7 @@ def test_mixed_site_and_charges_of_a_document():
 @pytest.mark.parametrize(("text", "message"), [
     (JSON[:-40], "is no JSON document.*cut off"),
     ("{}", "holds no structure; expected a pymatgen structure"),
+    (JSON + " more", "line 1: is no JSON document: Extra data"),
     (json.dumps({"structure": {**STRUCTURE, "lattice": {}}}), "the structure is damaged at 'matrix'"),
     (json.dumps({"structure": {**STRUCTURE, "sites": [{"abc": [0, 0, 0]}]}}), "the structure is damaged at 'species'"),
     (json.dumps({"structure": {**STRUCTURE, "sites": [1]}}), "the structure is damaged"),

@@ -55,6 +55,7 @@ def test_fused_numbers_of_outcar_are_parted():
 @pytest.mark.parametrize(("text", "message"), [
     (OUTCAR.replace("ions per type", "ions"), "holds no species and numbers of ions"),
     (OUTCAR.replace("VRHFIN =O", "VRHFI =O"), "names 1 species for 2 types of ions"),
+    (OUTCAR.replace("2   2", "2   2999999999"), "line 4: 3000000001 ions are too many"),
     (OUTCAR.replace("direct lattice vectors", "lattice"), "holds no lattice vectors"),
     (OUTCAR[: OUTCAR.index("position of ions")], "holds no geometry; the file may be cut off"),
     (OUTCAR[:-30], "position 4 of 4"),
@@ -77,6 +78,11 @@ def test_broken_vasprun_is_told(text, message):
     """Entities are refused unread, and a cut or damaged file is told with what is missing."""
     with pytest.raises(StructureError, match=message):
         crystal_in_text(text, "vasprun.xml")
+
+
+def test_declared_encoding_does_not_matter():
+    """The encoding in the XML declaration was undone when the file was read; even an unknown one is no obstacle."""
+    assert crystal_in_text(VASPRUN.replace("ISO-8859-1", "klingon"), "vasprun.xml").symmetry.number == 186
 
 
 def test_vasprun_cut_behind_its_geometry_is_read():

@@ -5,6 +5,7 @@ import contextlib
 import gzip
 import lzma
 import os
+import re
 
 import numpy as np
 import pytest
@@ -161,6 +162,24 @@ def test_truncated_text_never_escapes(name, share):
     text = ALL[name][: int(share * len(ALL[name]))]
     with contextlib.suppress(StructureError):
         assert len(crystal_in_text(text, "cut").species) in {2, 4}
+
+
+RUBBISH = (
+    "nan", "-1", "0", "999999999", "x", "'", '"', ";", "loop_", "data_", "_", "[", "{", "}", "<", ">", "/", "=", "(",
+    "*", "1.0.0", "\n", "", "é", "#", "null", "[]", '""', "0.0",
+)  # fmt: skip
+
+
+@pytest.mark.parametrize("seed", range(20))
+@pytest.mark.parametrize("name", [name for name in ALL if name != "aims"])
+def test_damaged_text_never_escapes(name, seed):
+    """A text with a few words lost, doubled or replaced by rubbish gives a crystal or an error of ours in one line."""
+    random = np.random.default_rng(seed)
+    words = re.split(r"(\s+|[,\"<>=(){}\[\]:])", ALL[name])
+    for place in random.integers(len(words), size=1 + seed % 4):
+        words[place] = (words[place] if random.random() < 0.2 else "") + RUBBISH[random.integers(len(RUBBISH))]
+    with contextlib.suppress(StructureError):
+        assert "class" in repr(crystal_in_text("".join(words), "damaged").symmetry)
 
 
 NUMBERS = {
