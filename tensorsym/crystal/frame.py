@@ -112,9 +112,10 @@ def placed_group(rotations: NDArray[np.intc], lattice: NDArray[np.float64]) -> P
 
 @lru_cache(maxsize=4096)
 def _prepared(rotations: bytes) -> _Preparation:
-    matrices = np.unique(np.frombuffer(rotations, dtype=np.intc).reshape(-1, 3, 3), axis=0)
+    matrices = np.frombuffer(rotations, dtype=np.intc).reshape(-1, 3, 3)
     found = frame_directions(frozenset(tuple(map(tuple, matrix)) for matrix in matrices.tolist()))
-    average = np.mean([np.kron(matrix.T, matrix.T) for matrix in matrices], axis=0)
+    # The mean of W^T G W; a rotation that a centred cell lists several times is listed as often as every other one.
+    average = np.einsum("nki,nlj->ijkl", matrices, matrices).reshape(9, 9) / len(matrices)
     axes = "".join(name for name, direction in zip("xyz", found.candidates[0], strict=True) if direction is not None)
     candidates = [[direction for direction in candidate if direction is not None] for candidate in found.candidates]
     if axes == "xz":
