@@ -64,7 +64,7 @@ def directions_in_text(text: str) -> dict[str, MillerDirection]:
 
     Examples
     --------
-    >>> {axis: found.indices for axis, found in directions_in_text("x=[2-1-10], z=(00.1)".replace(".", "0")).items()}
+    >>> {axis: found.indices for axis, found in directions_in_text("x=[2-1-10], z=(0001)").items()}
     {'x': (3, 0, 0), 'z': (0, 0, 1)}
     """
     found: dict[str, MillerDirection] = {}
