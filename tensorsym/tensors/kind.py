@@ -11,6 +11,9 @@ from tensorsym.errors import UsageError
 MAX_RANK = 10
 """Largest rank accepted: 3**10 index words still fit in memory without effort."""
 
+LARGEST_INDEX_GROUP = 50_000
+"""Most permutations of an index symmetry: all 8! of rank 8 are fine, 9! would take seconds and much memory."""
+
 SignedPermutation = tuple[tuple[int, ...], int]
 """``(p, s)`` says ``T[i_p0, i_p1, ...] = s T[i_0, i_1, ...]`` with s = 1 or -1."""
 
@@ -85,6 +88,9 @@ def _index_group(rank: int, generators: tuple[SignedPermutation, ...]) -> tuple[
             if product not in signs:
                 signs[product] = signs[known] * sign
                 waiting.append(product)
+                if len(signs) > LARGEST_INDEX_GROUP:
+                    msg = f"the index symmetry of rank {rank} has more than {LARGEST_INDEX_GROUP} permutations"
+                    raise UsageError(msg, hint="ask for a lower rank or fewer equal factors")
             elif signs[product] != signs[known] * sign:
                 msg = "the index equations contradict one another, so that every component vanishes"
                 raise UsageError(msg, hint="check their signs")

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import lru_cache
+from itertools import product
 from typing import TYPE_CHECKING
 
 from tensorsym.exact.orbits import Move, phased_orbits
@@ -93,6 +94,8 @@ def components_of(kind: TensorKind) -> Components:
     ('11', '22', '33', '12', '13', '23')
     """
     rank = kind.rank
+    if not kind.permutations:
+        return _all_words(rank)
     size = 3**rank
     spelled = [indices_of(word, rank) for word in range(size)]
     orbits = phased_orbits(size, [_index_move(*generator, spelled) for generator in kind.permutations], 2)
@@ -116,6 +119,24 @@ def components_of(kind: TensorKind) -> Components:
             for word, orbit in enumerate(orbits.orbit)
         ),
         multiplicity=tuple(multiplicity),
+    )
+
+
+def _all_words(rank: int) -> Components:
+    """Return the components of a kind without index symmetry: every word, those with all indices equal first."""
+    size = 3**rank
+    equal = sorted({0, (size - 1) // 2, size - 1})
+    order = [*equal, *(word for word in range(size) if word not in equal)]
+    texts = ["".join(digits) for digits in product("123", repeat=rank)]
+    of_word = [0] * size
+    for number, word in enumerate(order):
+        of_word[word] = number
+    return Components(
+        words=tuple(order),
+        digits=tuple(texts[word] for word in order),
+        of_word=tuple(of_word),
+        sign=(1,) * size,
+        multiplicity=(1,) * size,
     )
 
 
