@@ -42,9 +42,9 @@ class StudiedCrystal(Crystal):
         return check_tensor(self, values, property, **options)
 
 
-def read(path: str | PathLike[str], *, symprec: float = 1e-3) -> StudiedCrystal:
+def read(path: str | PathLike[str], *, symprec: float = 1e-3, index: int | None = None) -> StudiedCrystal:
     """Return the crystal in a file, ready to be asked; see `tensorsym.crystal.read.read`."""
-    return studied(read_crystal(path, symprec=symprec))
+    return studied(read_crystal(path, symprec=symprec, index=index))
 
 
 def from_pymatgen(structure: Any, *, symprec: float = 1e-3) -> StudiedCrystal:
