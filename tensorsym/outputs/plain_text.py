@@ -1,4 +1,4 @@
-"""A bare matrix of numbers in text."""
+"""A bare matrix of numbers in text: rows separated by line ends, numbers by blanks or commas."""
 
 from __future__ import annotations
 
@@ -6,38 +6,38 @@ import math
 import re
 from typing import TYPE_CHECKING
 
-import numpy as np
-
-from tensorsym.catalog.properties import property_named
 from tensorsym.errors import ShapeError, TensorFileError, UsageError
 from tensorsym.outputs.record import TensorRecord
-from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix, matrix_shape
+from tensorsym.outputs.rows import typical_place
+from tensorsym.outputs.shapes import rectangular, shaped
+from tensorsym.outputs.units import property_in_unit
+from tensorsym.tensors.notation import VOIGT_ORDER
 
 if TYPE_CHECKING:
-    from numpy.typing import NDArray
+    from tensorsym.outputs.content import Content
 
-    from tensorsym.catalog.properties import Property
+MOST_NUMBERS = 3**10 * 100
+"""More numbers than this are no tensor that can be checked."""
 
-MOST_NUMBERS = 3**10
+_SPACING = re.compile(r"[\s,;\[\](){}]+")
+_NUMBER = re.compile(r"[-+]?(?:\d+\.?\d*|\.\d+)(?:[EeDd][-+]?\d+)?")
 
 
 def read_bare_matrix(
-    text: str, source: str, *, property: str | None, order: str | None, unit: str | None, atoms: int
+    content: Content, *, property: str | None, order: str | None, unit: str | None, atoms: int
 ) -> tuple[TensorRecord, ...]:
     """Return the tensor that a bare matrix writes.
 
     Parameters
     ----------
-    text : str
-        Rows of numbers separated by blanks or commas; ``#`` begins a comment.
-    source : str
-        File, for messages.
+    content : Content
+        Rows of numbers separated by blanks, commas or brackets; ``#`` begins a comment.
     property : str
         Name of the property.
     order : str, optional
-        Order of the index pairs.
+        Order of the index pairs, the handbook's when absent.
     unit : str, optional
-        Unit of the numbers.
+        Unit of the numbers, that of the catalogue when absent.
     atoms : int
         Number of atoms of the structure, for properties of a site: that many matrices after one another.
 
@@ -51,59 +51,64 @@ def read_bare_matrix(
         If no property is named.
     """
     if property is None:
-        msg = f"{source} is a bare matrix"
+        msg = f"{content.source} says not what it holds"
         raise UsageError(
             msg, expected="the name of its property", hint="--property NAME, and --order for matrix notation"
         )
-    row = property_named(property)
-    words = [
-        (number, word)
-        for number, line in enumerate(text.splitlines(), 1)
-        for word in line.split("#")[0].replace(",", " ").split()
-    ]
-    values = np.array([_number(word, number, source) for number, word in words])
-    tensor, per_site = _shaped(values, row, order or VOIGT_ORDER, atoms, source)
-    return (
-        TensorRecord(
-            row.name,
-            "",
-            tensor,
-            unit or row.unit,
-            order=order or VOIGT_ORDER,
-            digits=_last_place([w for _, w in words]),
-            per_site=per_site,
-        ),
+    row, told_unit, notes = property_in_unit(property, unit)
+    words, lines = _words(content)
+    values = rectangular(
+        [[_finite(word, line, content.source) for word in found] for found, line in zip(words, lines, strict=True)],
+        row,
+        content.source,
+        lines,
     )
+    tensor, per_site, in_pairs = shaped(values, row, order or VOIGT_ORDER, atoms, content.source)
+    record = TensorRecord(
+        row.name,
+        "",
+        tensor,
+        told_unit,
+        order=(order or VOIGT_ORDER) if in_pairs else "",
+        digits=typical_place(word for found in words for word in found),
+        line=lines[0],
+        per_site=per_site,
+        notes=notes,
+    )
+    return (record,)
 
 
-def _number(word: str, number: int, source: str) -> float:
-    try:
-        value = float(word.replace("D", "E").replace("d", "e"))
-    except ValueError:
-        msg = f"{word!r} is no number"
-        raise TensorFileError(msg, where=f"{source}, line {number}") from None
+def _words(content: Content) -> tuple[list[list[str]], list[int]]:
+    """Return the words of the rows that hold any, and their lines."""
+    rows: list[list[str]] = []
+    lines: list[int] = []
+    count = 0
+    for number, line in enumerate(content.lines(), 1):
+        words = [word for word in _SPACING.split(line.lstrip("\ufeff").partition("#")[0]) if word]
+        if words and not rows and not _NUMBER.fullmatch(words[0]):
+            _finite(words[0], number, content.source)
+        count += len(words)
+        if count > MOST_NUMBERS:
+            msg = f"more than {MOST_NUMBERS} numbers"
+            raise ShapeError(msg, where=f"{content.source}, line {number}")
+        if words:
+            rows.append(words)
+            lines.append(number)
+    if not rows:
+        raise TensorFileError("holds no numbers", where=content.source)
+    return rows, lines
+
+
+def _finite(word: str, number: int, source: str) -> float:
+    where = f"{source}, line {number}"
+    if not _NUMBER.fullmatch(word):
+        if re.fullmatch(r"[-+]?(nan|inf(inity)?)", word, re.IGNORECASE):
+            msg = f"{word!r} is not finite"
+            raise TensorFileError(msg, where=where)
+        msg = f"{word[:40]!r} is no number"
+        raise TensorFileError(msg, where=where)
+    value = float(word.upper().replace("D", "E"))
     if not math.isfinite(value):
-        msg = f"{word!r} is not finite"
-        raise TensorFileError(msg, where=f"{source}, line {number}")
+        msg = f"{word[:40]!r} is not finite"
+        raise TensorFileError(msg, where=where)
     return value
-
-
-def _shaped(
-    values: NDArray[np.float64], row: Property, order: str, atoms: int, source: str
-) -> tuple[NDArray[np.float64], bool]:
-    full, matrix = (3,) * row.kind.rank, matrix_shape(row.kind)
-    size, matrix_size = 3**row.kind.rank, int(np.prod(matrix))
-    if row.site and len(values) == atoms * size and atoms > 1:
-        return values.reshape(atoms, *full), True
-    if len(values) == size:
-        return values.reshape(full), False
-    if len(values) == matrix_size:
-        return from_matrix(values.reshape(matrix), row.kind, row.factors, order), False
-    msg = f"{len(values)} numbers do not fit {row.name}"
-    expected = f"{matrix_size} in matrix notation {matrix}, or {size}" if matrix != full else f"{size}"
-    raise ShapeError(msg, where=source, expected=expected)
-
-
-def _last_place(words: list[str]) -> float | None:
-    places = [len(match[1]) for word in words if (match := re.fullmatch(r"[-+]?\d*\.(\d+)", word))]
-    return 10.0 ** -min(places) if places else None

@@ -2,37 +2,72 @@
 
 from __future__ import annotations
 
+import json
 from dataclasses import replace
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
-from tensorsym.crystal.read import text_of
-from tensorsym.errors import OutputFileError
+from tensorsym.errors import OutputFileError, TensorFileError
+from tensorsym.outputs.content import Content
+from tensorsym.outputs.json_document import read_json_document
+from tensorsym.outputs.numpy_file import looks_like_numpy_file, read_numpy_file
 from tensorsym.outputs.plain_text import read_bare_matrix
-from tensorsym.outputs.tensor_file import read_tensor_document
-from tensorsym.outputs.vasp_outcar import looks_like_outcar, read_vasp_outcar
+from tensorsym.outputs.recognise import reader_for, refused
+from tensorsym.outputs.record import OutputFile
+from tensorsym.outputs.tensor_file import looks_like_tensor_document, parsed_json, read_tensor_document
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
     from os import PathLike
 
-    from tensorsym.outputs.record import OutputFile, TensorRecord
+    from tensorsym.outputs.record import TensorRecord
 
-EXPECTED = "a VASP OUTCAR with tensors, or a structure file followed by a tensor file"
+TENSOR_FILE = "tensor file"
 
 
-def read_output(path: str | PathLike[str], *, symprec: float = 1e-3) -> OutputFile:
+def read_output(path: str | PathLike[str], *, symprec: float = 1e-3, reader: str | None = None) -> OutputFile:
     """Return structure and tensors of an output.
+
+    Parameters
+    ----------
+    path : path-like
+        Output of a calculation, or a JSON document that holds tensors; compressed by gzip, bzip2 or xz or not.
+    symprec : float
+        Distance in angstrom within which atoms of the structure count as equivalent.
+    reader : str, optional
+        Name of the reader to use, in place of the one that the content asks for.
 
     Raises
     ------
     InputError
         If the file cannot be read or is no output known.
+    UnknownNameError
+        If there is no reader of that name.
     """
-    text, source = text_of(path), str(path)
-    if looks_like_outcar(text):
-        output = read_vasp_outcar(text, source)
-        crystal = output.crystal and replace(output.crystal, symprec=symprec)
-        return replace(output, crystal=crystal)
-    raise OutputFileError("is no output known to hold tensors", where=source, expected=EXPECTED)
+    content = Content(path)
+    found = reader_for(content, reader)
+    if found is not None:
+        return _at(found.read(content), symprec)
+    if _is_json(content):
+        document = _first_document(content)
+        if looks_like_tensor_document(document):
+            return OutputFile(None, read_tensor_document(document, content.source), TENSOR_FILE)
+        return _at(read_json_document(document, content.source), symprec)
+    raise refused(content)
+
+
+def read_documents(path: str | PathLike[str], *, symprec: float = 1e-3) -> Iterator[OutputFile]:
+    """Yield what each line of a file with one JSON document a line holds.
+
+    Raises
+    ------
+    InputError
+        If a line is no such document; its number is named.
+    """
+    content = Content(path)
+    for number, line in enumerate(content.lines(), 1):
+        if line.strip():
+            where = f"{content.source}, line {number}"
+            yield _at(read_json_document(parsed_json(line, where), where), symprec)
 
 
 def read_tensors(
@@ -42,15 +77,73 @@ def read_tensors(
     order: str | None = None,
     unit: str | None = None,
     atoms: int = 0,
+    reader: str | None = None,
 ) -> tuple[TensorRecord, ...]:
-    """Return the tensors of a tensor file in our JSON form, or of a bare matrix.
+    """Return the tensors of a tensor file in our JSON form, of a bare matrix, a ``.npy`` file, or of an output.
+
+    Parameters
+    ----------
+    path : path-like
+        The file.
+    property, order, unit : str, optional
+        What a bare matrix or array holds; files that say so themselves do not need them.
+    atoms : int
+        Number of atoms of the structure, for properties of a site.
+    reader : str, optional
+        Name of the reader of an output.
 
     Raises
     ------
     InputError
-        If the file cannot be read as either.
+        If the file cannot be read as any of them.
     """
-    text, source = text_of(path), str(path)
-    if text.lstrip()[:1] == "{" or (text.lstrip()[:1] == "[" and '"' in text):
-        return read_tensor_document(text, source)
-    return read_bare_matrix(text, source, property=property, order=order, unit=unit, atoms=atoms)
+    content = Content(path)
+    found = reader_for(content, reader)
+    if found is not None:
+        return found.read(content).tensors
+    if looks_like_numpy_file(content.start):
+        return read_numpy_file(content, property=property, order=order, unit=unit, atoms=atoms)
+    if content.is_binary:
+        raise TensorFileError("is a binary file, not text", where=content.source)
+    if _is_json(content):
+        document = _first_document(content)
+        if isinstance(document, dict) and not looks_like_tensor_document(document) and "schema" not in document:
+            return _of_foreign_document(document, content.source)
+        if not _is_bare(document):
+            return read_tensor_document(document, content.source)
+    return read_bare_matrix(content, property=property, order=order, unit=unit, atoms=atoms)
+
+
+def _is_json(content: Content) -> bool:
+    start = content.head.lstrip()
+    return start[:1] == "{" or start[:1] == "["
+
+
+def _first_document(content: Content) -> Any:
+    """Return the document of a JSON file, the first one when there is one a line."""
+    try:
+        return parsed_json(content.text, content.source)
+    except TensorFileError as error:
+        cause = error.__cause__
+        if not (isinstance(cause, json.JSONDecodeError) and cause.msg == "Extra data"):
+            raise
+    return parsed_json(next(content.lines()), f"{content.source}, line 1")
+
+
+def _of_foreign_document(document: Any, source: str) -> tuple[TensorRecord, ...]:
+    try:
+        return read_json_document(document, source).tensors
+    except OutputFileError:
+        return read_tensor_document(document, source)  # its message names the keys that are missing
+
+
+def _is_bare(document: Any) -> bool:
+    """Tell nested lists of numbers, which are a bare matrix in brackets."""
+    while isinstance(document, list) and document:
+        document = document[0]
+    return not isinstance(document, list | dict | str)
+
+
+def _at(output: OutputFile, symprec: float) -> OutputFile:
+    crystal = output.crystal
+    return output if crystal is None else replace(output, crystal=replace(crystal, symprec=symprec))

@@ -1,191 +1,99 @@
-"""The tensors of a VASP OUTCAR. Its matrix order is XX YY ZZ XY YZ ZX (VASP manual; seen in real files)."""
+"""The tensors of a VASP OUTCAR, read line by line; of several like tables the last one counts."""
 
 from __future__ import annotations
 
-import math
 import re
-from typing import TYPE_CHECKING, NamedTuple
+from dataclasses import replace
+from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tensorsym.catalog.properties import property_named
 from tensorsym.crystal.read import crystal_in_text
 from tensorsym.errors import OutputFileError
-from tensorsym.outputs.record import OutputFile, TensorRecord
-from tensorsym.tensors.notation import from_matrix
+from tensorsym.outputs.piezoelectric_noise import with_noise_of_two_printings
+from tensorsym.outputs.record import OutputFile
+from tensorsym.outputs.rows import Lines
+from tensorsym.outputs.totals import with_totals
+from tensorsym.outputs.vasp_site_tables import SiteTables
+from tensorsym.outputs.vasp_tables import tensor_under, titled
 
 if TYPE_CHECKING:
-    from numpy.typing import NDArray
+    from tensorsym.crystal.crystal import Crystal
+    from tensorsym.outputs.content import Content
+    from tensorsym.outputs.record import TensorRecord
 
-ORDER = "11 22 33 12 23 13"
-"""Order of the index pairs in elastic and piezoelectric tables."""
+FORMAT = "OUTCAR"
 
-ELEMENTARY = 16.02176634
-"""C/m^2 of one elementary charge times angstrom per cubic angstrom (CODATA 2018)."""
+MOST_LINES_BEFORE = 2_000_000
+"""The first geometry is looked for in this many lines."""
 
-
-class Table(NamedTuple):
-    """One kind of table: how its heading begins, how many rows and columns, what it holds."""
-
-    heading: str
-    rows: int
-    columns: int
-    property: str
-    label: str
-    unit: str
+_OF_INTEREST = re.compile(r"TENSOR|MODULI|EFFECTIVE CHARGES|field gradients|General timing|^ vasp\.\d")
+_GEOMETRY = re.compile(r"position of ions in fractional coordinates")
+_COUNTS = re.compile(r"ions per type *= *([\d ]+)")
 
 
-_CLAMPED, _IONIC, _RAW = "electronic, clamped ion", "ionic contribution", "before the code symmetrised it"
-_TABLES = (
-    Table(r"MACROSCOPIC STATIC DIELECTRIC TENSOR IONIC", 3, 3, "dielectric", _IONIC, "1"),
-    Table(r"MACROSCOPIC STATIC DIELECTRIC TENSOR", 3, 3, "dielectric", _CLAMPED, "1"),
-    Table(r"PIEZOELECTRIC TENSOR IONIC CONTR.*C/m", 3, 6, "piezoelectric-stress", _IONIC, "C/m^2"),
-    Table(r"PIEZOELECTRIC TENSOR +for.*e +Angst", 3, 6, "piezoelectric-stress", f"{_CLAMPED}, {_RAW}", "e angstrom"),
-    Table(r"PIEZOELECTRIC TENSOR +for.*C/m", 3, 6, "piezoelectric-stress", _CLAMPED, "C/m^2"),
-    Table(r"SYMMETRIZED ELASTIC MODULI", 6, 6, "elastic-stiffness", "clamped ion, symmetrised by the code", "kbar"),
-    Table(r"ELASTIC MODULI (?:IONIC CONTR|CONTR FROM IONIC)", 6, 6, "elastic-stiffness", _IONIC, "kbar"),
-    Table(r"TOTAL ELASTIC MODULI", 6, 6, "elastic-stiffness", "total, relaxed ion", "kbar"),
-    Table(r"^ *ELASTIC MODULI", 6, 6, "elastic-stiffness", f"clamped ion, {_RAW}", "kbar"),
-)
-"""Headings are tried in this order, so the longer of two that begin alike stands first."""
-
-_NUMBER = re.compile(r"[-+]?\d+\.\d*(?:[EeDd][-+]?\d+)?")
-_LONGEST_HEAD = 6
-_BORN = re.compile(r"BORN EFFECTIVE CHARGES")
-_GRADIENT = re.compile(r"Electric field gradients \(V/A\^2\)")
-
-
-def looks_like_outcar(text: str) -> bool:
+def looks_like_outcar(head: str) -> bool:
     """Tell an OUTCAR by its first line."""
-    return "vasp." in text[:200]
+    return re.match(r"\s*vasp\.\d", head) is not None
 
 
-def read_vasp_outcar(text: str, source: str) -> OutputFile:
-    """Return structure and tensors of an OUTCAR; of several like tables the last one counts.
+def read_vasp_outcar(content: Content) -> OutputFile:
+    """Return structure and tensors of an OUTCAR.
+
+    The structure is the first one printed: a calculation by finite differences ends on a displaced one.
 
     Raises
     ------
-    OutputFileError
-        If a table is cut off or holds asterisks or other words in place of numbers.
+    InputError
+        If lattice or positions are missing, a table is cut off or holds other words than numbers, or a second run
+        follows; the line is named.
     """
-    lines = text.splitlines()
-    crystal = crystal_in_text(text, source)
+    lines = Lines(content.lines(), content.source)
+    crystal = _first_crystal(lines)
+    sites = SiteTables(crystal.species)
     found: dict[tuple[str, str, str], TensorRecord] = {}
-    for number, line in enumerate(lines):
-        if "TENSOR" in line or "MODULI" in line:
-            table = next((table for table in _TABLES if re.search(table.heading, line)), None)
-            if table is not None and "FIELD DIRECTION" not in line:
-                found[table.property, table.label, table.unit] = _tensor(lines, number, table, source)
-        elif _BORN.search(line):
-            found["born-charge", "", ""] = _born_charges(lines, number, len(crystal.species), source)
-        elif _GRADIENT.search(line):
-            found["efg", "", ""] = _gradients(lines, number, len(crystal.species), source)
-    notes = () if "General timing and accounting" in text else ("the run did not finish: it ends without its timings",)
-    volume = abs(float(np.linalg.det(crystal.lattice)))
-    return OutputFile(crystal, tuple(_with_noise(found, volume)), "OUTCAR", notes)
-
-
-def _tensor(lines: list[str], number: int, table: Table, source: str) -> TensorRecord:
-    rows, begin = _rows(lines, number + 1, table.rows, table.columns, source)
-    matrix = np.array([[float(word) for word in row] for row in rows])
-    row = property_named(table.property)
-    values = from_matrix(matrix, row.kind, row.factors, ORDER) if table.columns == 6 else matrix
-    return TensorRecord(
-        table.property,
-        table.label,
-        values,
-        table.unit,
-        order=ORDER if table.columns == 6 else "",
-        digits=_last_place(rows),
-        line=begin + 1,
-    )
-
-
-def _rows(lines: list[str], start: int, count: int, columns: int, source: str) -> tuple[list[list[str]], int]:
-    """Return the words of the rows of numbers that follow, skipping rules and column heads."""
-    place = start
-    while place < len(lines) and place < start + _LONGEST_HEAD and not _NUMBER.search(lines[place]):
-        if "*" in lines[place]:
-            break
-        place += 1
-    rows = []
-    for offset in range(count):
-        if place + offset >= len(lines):
-            msg = f"the table of line {start} is cut off after {offset} of {count} rows"
-            raise OutputFileError(msg, where=source, hint="the run may not have finished")
-        line = lines[place + offset]
-        words = _NUMBER.findall(line)
-        if len(words) != columns or "*" in line or "nan" in line.lower():
-            msg = f"{line.strip()!r} is no row of {columns} numbers"
+    finished = False
+    for line in lines:
+        if not _OF_INTEREST.search(line):
+            continue
+        if line.startswith(" vasp."):
+            msg = "a second run begins here"
             raise OutputFileError(
-                msg, where=f"{source}, line {place + offset + 1}", hint="the table may be cut off or overflown"
+                msg, where=f"{lines.source}, line {lines.number}", hint="give the output of one run at a time"
             )
-        rows.append(words)
-    return rows, place
+        finished |= "General timing" in line
+        title = titled(line)
+        record = tensor_under(title, lines) if title else sites.record_under(line, lines)
+        if record is not None:
+            key = (record.property, record.label, record.unit)
+            found[key] = _told_if_changed(record, found.get(key))
+    sites.refuse_if_unfinished(lines)
+    records = with_totals(with_noise_of_two_printings(tuple(found.values()), _volume(crystal)))
+    notes = () if finished else ("the run did not finish: the file ends without its timings",)
+    return OutputFile(crystal, records, FORMAT, notes)
 
 
-def _born_charges(lines: list[str], number: int, atoms: int, source: str) -> TensorRecord:
-    tensors, rows_seen = [], []
-    place = number + 1
-    for atom in range(atoms):
-        while place < len(lines) and not re.match(rf"\s*ion\s+{atom + 1}\s*$", lines[place]):
-            place += 1
-            if place > number + 4 * atoms + 8:
-                break
-        rows, place = _rows(lines, place + 1, 3, 3, source)
-        rows_seen += rows
-        tensors.append([[float(word) for word in row] for row in rows])
-        place += 3
-    return TensorRecord(
-        "born-charge",
-        "rows field, columns displacement",
-        np.array(tensors),
-        "e",
-        digits=_last_place(rows_seen),
-        line=number + 2,
-        per_site=True,
-    )
+def _first_crystal(lines: Lines) -> Crystal:
+    """Return the crystal of the lines up to the end of the first geometry, which are taken."""
+    head: list[str] = []
+    counts = 0
+    for line in lines:
+        head.append(line)
+        if found := _COUNTS.search(line):
+            counts = sum(int(word) for word in found[1].split())
+        if _GEOMETRY.search(line) or lines.number > MOST_LINES_BEFORE:
+            break
+    head += [line for _, line in zip(range(counts), lines, strict=False)]
+    return crystal_in_text("\n".join(head) + "\n", lines.source)
 
 
-def _gradients(lines: list[str], number: int, atoms: int, source: str) -> TensorRecord:
-    rows, begin = _rows(lines, number + 1, atoms, 6, source)
-    tensors = []
-    for row in rows:
-        xx, yy, zz, xy, xz, yz = (float(word) for word in row)
-        tensors.append([[xx, xy, xz], [xy, yy, yz], [xz, yz, zz]])
-    return TensorRecord(
-        "efg",
-        "",
-        np.array(tensors),
-        "V/angstrom^2",
-        order="11 22 33 12 13 23",
-        digits=_last_place(rows),
-        line=begin + 1,
-        per_site=True,
-    )
+def _told_if_changed(record: TensorRecord, earlier: TensorRecord | None) -> TensorRecord:
+    """Add a note when an earlier table of the same title held other numbers."""
+    if earlier is None or np.allclose(record.values, earlier.values, rtol=0.0, atol=1.5 * (record.digits or 0.0)):
+        return record
+    note = f"lines {earlier.line} and {record.line} print it with different numbers: the later ones are used"
+    return replace(record, notes=(*record.notes, note))
 
 
-def _last_place(rows: list[list[str]]) -> float:
-    """Return the size of one unit in the last printed place, the coarsest of all words."""
-    places = [len(re.split(r"[EeDd]", word)[0].partition(".")[2]) for row in rows for word in row]
-    return 10.0 ** -min(places)
-
-
-def _with_noise(found: dict[tuple[str, str, str], TensorRecord], volume: float) -> list[TensorRecord]:
-    """Give the two printings of the piezoelectric tensor the difference between them as their noise."""
-    from dataclasses import replace
-
-    raw = next((record for record in found.values() if record.unit == "e angstrom"), None)
-    mended = found.get(("piezoelectric-stress", _CLAMPED, "C/m^2"))
-    if raw is None or mended is None:
-        return list(found.values())
-    scale = ELEMENTARY / volume
-    difference: NDArray[np.float64] = raw.values * scale - mended.values
-    sigma = math.sqrt(float((difference**2).mean()))
-    sigma = max(sigma, 0.3 * (mended.digits or 0.0))
-    note = "its noise is the difference of the two printings, before and after the code symmetrised them"
-    replaced = {
-        id(raw): replace(raw, sigma=sigma / scale, notes=(note,)),
-        id(mended): replace(mended, sigma=sigma, notes=(note,)),
-    }
-    return [replaced.get(id(record), record) for record in found.values()]
+def _volume(crystal: Crystal) -> float:
+    return abs(float(np.linalg.det(crystal.lattice)))

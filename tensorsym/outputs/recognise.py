@@ -1,0 +1,64 @@
+"""Which reader a file needs, told by its content and never by its name."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, NamedTuple
+
+from tensorsym.errors import OutputFileError, UnknownNameError, nearest_names
+from tensorsym.outputs.vasp_outcar import looks_like_outcar, read_vasp_outcar
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from tensorsym.outputs.content import Content
+    from tensorsym.outputs.record import OutputFile
+
+
+class Reader(NamedTuple):
+    """A format of outputs that hold tensors."""
+
+    name: str
+    """Name by which it can be asked for."""
+    words: str
+    """The format in words."""
+    is_in: Callable[[str], bool]
+    """Tells it by the first part of a text."""
+    read: Callable[[Content], OutputFile]
+    """Reads a file of that format."""
+
+
+READERS = (Reader("vasp-outcar", "VASP OUTCAR", looks_like_outcar, read_vasp_outcar),)
+"""Readers of calculations, in the order in which they are tried."""
+
+
+def reader_for(content: Content, name: str | None = None) -> Reader | None:
+    """Return the reader for a file, None if no format of calculations is recognised.
+
+    Parameters
+    ----------
+    content : Content
+        The file.
+    name : str, optional
+        Name of a reader that is to be used, whatever the content looks like.
+
+    Raises
+    ------
+    UnknownNameError
+        If no reader has that name.
+    """
+    if name is None:
+        return next((reader for reader in READERS if reader.is_in(content.head)), None)
+    found = next((reader for reader in READERS if reader.name == name), None)
+    if found is None:
+        names = [reader.name for reader in READERS]
+        msg = f"{name!r} is no reader"
+        raise UnknownNameError(msg, nearest=nearest_names(name, names), expected=", ".join(names))
+    return found
+
+
+def refused(content: Content) -> OutputFileError:
+    """Return the error for a file that holds no tensors as far as can be told."""
+    formats = ", ".join(reader.words for reader in READERS)
+    what = "is a binary file" if content.is_binary else "is no output known to hold tensors"
+    expected = f"{formats}, a JSON document, or a structure file followed by a tensor file"
+    return OutputFileError(what, where=content.source, expected=expected)
