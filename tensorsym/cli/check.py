@@ -4,15 +4,20 @@ from __future__ import annotations
 
 import json
 import sys
+from typing import TYPE_CHECKING, Any
 
 import click
 
 from tensorsym.cli.options import SYMPREC, format_option
+from tensorsym.errors import UsageError
+
+if TYPE_CHECKING:
+    from tensorsym.tasks.check_file import CheckReport
 
 
 @click.command("check")
-@click.argument("file")
-@click.argument("tensorfile", required=False)
+@click.argument("files", nargs=-1, required=True, metavar="FILE [TENSORFILE]")
+@click.option("--each", is_flag=True, help="Every FILE is an output of its own; one line for each.")
 @click.option("--property", "property_name", metavar="NAME", help="Property of a bare matrix; check only this one.")
 @click.option("--order", metavar="PAIRS", help="Order of index pairs of a bare matrix, such as 'xx yy zz xy yz zx'.")
 @click.option("--axes", metavar="AXES", help="Axes of the numbers: file, ieee, international, or 'x=[110] z=(001)'.")
@@ -29,8 +34,8 @@ from tensorsym.cli.options import SYMPREC, format_option
 @SYMPREC
 @format_option("text", "json")
 def command(
-    file: str,
-    tensorfile: str | None,
+    files: tuple[str, ...],
+    each: bool,  # noqa: FBT001  click passes options by name
     property_name: str | None,
     order: str | None,
     axes: str | None,
@@ -51,27 +56,34 @@ def command(
     \b
     tensorsym check OUTCAR
     tensorsym check POSCAR d.txt --property piezoelectric --order "xx yy zz xy yz zx"
+    tensorsym check --each runs/*/OUTCAR
     """
+    options: dict[str, Any] = {
+        "property": property_name,
+        "order": order,
+        "axes": axes,
+        "unit": unit,
+        "sigma": sigma,
+        "tolerance": tolerance,
+        "symprec": symprec,
+    }
+    if each:
+        _refuse(target is not None or accept is not None, "--each does not go with --write or --accept")
+        sys.exit(_check_each(files, options, style))
+    _refuse(len(files) > 2, "more than two files", "a structure and a tensor file, or --each")
+    _refuse(accept is not None and not target, "--accept needs --write PATH")
     from tensorsym.tasks.check_file import check_file
 
-    report = check_file(
-        file,
-        tensorfile,
-        property=property_name,
-        order=order,
-        axes=axes,
-        unit=unit,
-        sigma=sigma,
-        tolerance=tolerance,
-        symprec=symprec,
-    )
-    if accept is not None and not target:
-        msg = "--accept needs --write PATH"
-        raise click.UsageError(msg)
+    report = check_file(*files, **options)
     if target:
         from tensorsym.tasks.mend import write_symmetrised
 
         write_symmetrised(report, target, accept=accept, force=force)
+    _show(report, style)
+    sys.exit(0 if report.verdict == "consistent" else 1)
+
+
+def _show(report: CheckReport, style: str) -> None:
     if style == "json":
         from tensorsym.report.check_json import check_document
 
@@ -80,4 +92,24 @@ def command(
         from tensorsym.report.check_text import check_text
 
         click.echo(check_text(report))
-    sys.exit(0 if report.verdict == "consistent" else 1)
+
+
+def _check_each(files: tuple[str, ...], options: dict[str, Any], style: str) -> int:
+    """Check files one by one and return the highest exit code of them."""
+    from tensorsym.report.check_json import checks_document
+    from tensorsym.report.check_text import summary_line
+    from tensorsym.tasks.check_many import check_each
+
+    done = []
+    for checked in check_each(files, **options):
+        done.append(checked)
+        if style == "text":
+            click.echo(summary_line(checked))
+    if style == "json":
+        click.echo(json.dumps(checks_document(done), indent=1))
+    return max(checked.exit_code for checked in done)
+
+
+def _refuse(wrong: bool, message: str, expected: str | None = None) -> None:  # noqa: FBT001  a condition
+    if wrong:
+        raise UsageError(message, expected=expected)

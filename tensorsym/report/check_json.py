@@ -7,8 +7,11 @@ from typing import TYPE_CHECKING, Any
 from tensorsym.report.allowed_json import axes_document, group_document, structure_document
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     from tensorsym.tasks.check import TensorVerdict
     from tensorsym.tasks.check_file import CheckReport
+    from tensorsym.tasks.check_many import CheckedFile
     from tensorsym.tasks.check_sites import SiteVerdict
 
 
@@ -26,6 +29,19 @@ def check_document(report: CheckReport) -> dict[str, Any]:
             verdict_document(verdict) | _diagnosis(report, number) for number, verdict in enumerate(report.verdicts)
         ],
         "notes": list(report.notes),
+    }
+
+
+def checks_document(files: Sequence[CheckedFile]) -> dict[str, Any]:
+    """Return the document of many files, schema ``tensorsym/checks/1``."""
+    return {
+        "schema": "tensorsym/checks/1",
+        "files": [
+            check_document(checked.report)
+            if checked.report is not None
+            else {"schema": "tensorsym/check/1", "source": checked.source, "error": str(checked.error)}
+            for checked in files
+        ],
     }
 
 

@@ -10,6 +10,7 @@ from tensorsym.report.tables import paragraph
 if TYPE_CHECKING:
     from tensorsym.tasks.check import Offence, TensorVerdict
     from tensorsym.tasks.check_file import CheckReport
+    from tensorsym.tasks.check_many import CheckedFile
     from tensorsym.tasks.check_sites import SiteVerdict
     from tensorsym.tasks.diagnose.diagnosis import Diagnosis
 
@@ -34,6 +35,25 @@ def check_text(report: CheckReport) -> str:
     ]
     lines += [paragraph("Note:", [note]) for note in report.notes]
     return "\n\n".join(["\n".join(lines), *_verdicts(report), _summary(report)])
+
+
+def summary_line(checked: CheckedFile) -> str:
+    """Return one line for a file of many: its verdict, and what is worst in it."""
+    if checked.report is None:
+        reason = str(checked.error).removeprefix(f"{checked.source}: ")
+        return f"{checked.source}: not checked: {reason}"
+    report = checked.report
+    bad = [number for number, verdict in enumerate(report.verdicts) if not verdict.is_consistent]
+    count = len(report.verdicts)
+    if not bad:
+        return f"{checked.source}: consistent, {count} {'tensor' if count == 1 else 'tensors'}"
+    worst = max(bad, key=lambda number: report.verdicts[number].residual)
+    cause = report.diagnoses[worst].explanations[0].kind if worst in report.diagnoses else "site"
+    verdict = report.verdicts[worst]
+    return (
+        f"{checked.source}: NOT CONSISTENT, {len(bad)} of {count}, worst {verdict.row.name} "
+        f"{residual(verdict.residual)} ({cause})"
+    )
 
 
 def _verdicts(report: CheckReport) -> list[str]:

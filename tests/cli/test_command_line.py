@@ -174,3 +174,17 @@ def test_help_has_an_example(command):
 
     assert done.returncode == 0
     assert f"tensorsym {command}" in done.stdout
+
+
+def test_many_files_get_a_line_each(tmp_path):
+    """With --each every file gets one line, a bad one does not stop the others, and the worst exit code is returned."""
+    bad = tmp_path / "empty"
+    bad.write_bytes(b"")
+    done = run("check", "--each", OUTCAR, bad, OUTCAR)
+
+    assert done.returncode == 3
+    assert [line.split(": ")[1] for line in done.stdout.splitlines()] == [
+        "consistent, 4 tensors",
+        "not checked",
+        "consistent, 4 tensors",
+    ]
