@@ -5,7 +5,9 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, NamedTuple
 
 from tensorsym.errors import OutputFileError, UnknownNameError, nearest_names
+from tensorsym.outputs.espresso_phonon import looks_like_phonon_output, read_phonon_output
 from tensorsym.outputs.vasp_outcar import looks_like_outcar, read_vasp_outcar
+from tensorsym.outputs.vasp_xml import looks_like_vasprun, read_vasprun_tensors
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -27,7 +29,11 @@ class Reader(NamedTuple):
     """Reads a file of that format."""
 
 
-READERS = (Reader("vasp-outcar", "VASP OUTCAR", looks_like_outcar, read_vasp_outcar),)
+READERS = (
+    Reader("vasp-outcar", "VASP OUTCAR", looks_like_outcar, read_vasp_outcar),
+    Reader("vasp-xml", "vasprun.xml", looks_like_vasprun, read_vasprun_tensors),
+    Reader("espresso-phonon", "ph.x output of Quantum ESPRESSO", looks_like_phonon_output, read_phonon_output),
+)
 """Readers of calculations, in the order in which they are tried."""
 
 

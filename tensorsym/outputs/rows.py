@@ -91,6 +91,23 @@ class Lines:
         msg = f"{what}, begun in line {begun}, is cut off after {len(found)} of {rows} rows"
         raise OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=CUT_OFF)
 
+    def skip_to(self, pattern: str, what: str, most_skipped: int = 8) -> str:
+        """Take lines up to the one in which a pattern is found, and return that one.
+
+        Raises
+        ------
+        OutputFileError
+            If it is not among the next `most_skipped` lines.
+        """
+        begun = self.number
+        for line in self:
+            if re.search(pattern, line):
+                return line
+            if self.number - begun >= most_skipped:
+                break
+        msg = f"{what}: the next part is missing"
+        raise OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=CUT_OFF)
+
     def _no_row(self, line: str, columns: int, what: str, found: Sequence[object]) -> OutputFileError:
         cause = _NO_NUMBER.search(line)
         msg = f"{what}: {line.strip()[:70]!r} is no row of {columns} numbers"

@@ -28,15 +28,12 @@ if TYPE_CHECKING:
 GRADIENT_ORDER = "11 22 33 12 13 23"
 """Order of the columns of field gradients, another than that of elastic tables."""
 
-MOST_BETWEEN = 8
-"""Most lines from the end of one atom's table to the heading of the next."""
-
 _STRAIN = re.compile(r"INTERNAL STRAIN TENSOR FOR ION +(\d+) +for displacements")
 _STRAIN_SECTION = re.compile(r"INTERNAL STRAIN TENSORS FROM (STRAINED CELLS|DISPLACED ATOMS)")
 _BORN = re.compile(r"BORN EFFECTIVE CHARGES +\(")
 _GRADIENTS = re.compile(r"Electric field gradients \(V/A\^2\)")
 _SHIFTS = re.compile(r"^ *(UN)?SYMMETRIZED TENSORS *$")
-_ION = re.compile(r"^ *ion +(\d+) *$")
+_ION = r"^ *ion +\d+ *$"
 
 
 class SiteTables:
@@ -120,15 +117,10 @@ class SiteTables:
         """Return one 3 x 3 table an atom, each under the number of its atom."""
         tables = []
         for atom in range(1, len(self._labels) + 1):
-            for line, _ in zip(lines, range(MOST_BETWEEN), strict=False):
-                if found := _ION.match(line):
-                    if int(found[1]) != atom:
-                        msg = f"{what}: atom {found[1]} where atom {atom} should stand"
-                        raise OutputFileError(msg, where=f"{lines.source}, line {lines.number}")
-                    break
-            else:
-                msg = f"{what}: no heading of atom {atom} of {len(self._labels)}"
-                raise OutputFileError(msg, where=f"{lines.source}, line {lines.number}", hint=CUT_OFF)
+            heading = lines.skip_to(_ION, f"{what} of atom {atom}")
+            if int(heading.split()[-1]) != atom:
+                msg = f"{what}: {heading.strip()} where atom {atom} should stand"
+                raise OutputFileError(msg, where=f"{lines.source}, line {lines.number}")
             tables.append(lines.table(3, 3, f"{what} of atom {atom}", most_skipped=0))
         return tables
 
