@@ -8,7 +8,6 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from tensorsym.catalog.properties import Property, property_named
-from tensorsym.catalog.units import property_in_unit
 from tensorsym.crystal.directions import direction_namer
 from tensorsym.errors import ShapeError
 from tensorsym.groups.placement import element_in_words, elements_in_words
@@ -16,6 +15,7 @@ from tensorsym.invariants.axes import space_in_axes
 from tensorsym.invariants.projection import orthonormal_basis, projected
 from tensorsym.invariants.relations import combination_text, matrix_factor, matrix_relations
 from tensorsym.invariants.solver import invariant_space
+from tensorsym.outputs.units import property_in_unit
 from tensorsym.tasks.noise import WORKING_SIZE, Threshold, noise_threshold
 from tensorsym.tensors.axes import Axes, read_only, turned
 from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix, matrix_shape
@@ -179,7 +179,10 @@ def check_tensor(
     UnknownNameError
         If no property has the name.
     """
-    row = property if isinstance(property, Property) else property_in_unit(property_named(property), unit)
+    row = property if isinstance(property, Property) else property_named(property)
+    if unit is not None and not isinstance(property, Property):
+        row, unit, told = property_in_unit(property, unit)
+        notes = (*notes, *told)
     tensor = full_tensor(values, row, order)
     spread = None if sigma is None else _full_sigma(sigma, row, order)
     group, frame = crystal.symmetry.group, crystal.symmetry.frame
