@@ -64,7 +64,7 @@ def _record_under(line: str, lines: Lines, labels: tuple[str, ...]) -> TensorRec
         label = FROM_FORCES if "Force" in charges[1] else FROM_POLARISATION
         if "asr" in charges[2]:
             label += ", before the sum rule" if "without" in charges[2] else ", after the sum rule"
-        tables = _blocks(lines, len(labels), 1, "Born charges", _atom_heading)
+        tables = matrices_under(lines, len(labels), 1, "Born charges", atom_heading)
         return site_record("born-charge", label, tables, (3, 3), "e", labels)
     if "Dielectric constant in cartesian axis" in line:
         table = lines.table(3, 3, "the dielectric tensor")
@@ -73,10 +73,10 @@ def _record_under(line: str, lines: Lines, labels: tuple[str, ...]) -> TensorRec
             contribution="electronic",
         )  # fmt: skip
     if "Raman tensor (au^-1) in cartesian axis" in line:
-        tables = _blocks(lines, len(labels), 3, "the Raman tensor", _atom_heading)
+        tables = matrices_under(lines, len(labels), 3, "the Raman tensor", atom_heading)
         return site_record("raman-atomic", ATOMIC_RAMAN, tables, (3, 3, 3), "bohr^-1", labels)
     if "Raman tensor (A^2)" in line:
-        tables = _blocks(lines, 3 * len(labels), 1, "the Raman tensor", _polarised_heading)
+        tables = matrices_under(lines, 3 * len(labels), 1, "the Raman tensor", polarised_heading)
         return site_record("raman-atomic", f"{ATOMIC_RAMAN}, times the volume", tables, (3, 3, 3), "angstrom^2", labels)
     if "Electro-optic tensor in cartesian axis" in line:
         tables = [lines.table(3, 3, "the electro-optic tensor") for _ in range(3)]
@@ -103,8 +103,14 @@ def site_record(
     )
 
 
-def _blocks(lines: Lines, blocks: int, tables: int, what: str, heading: Callable[[int], str]) -> list[Table]:
-    """Return `tables` tables of 3 x 3 under each of `blocks` headings."""
+def matrices_under(lines: Lines, blocks: int, tables: int, what: str, heading: Callable[[int], str]) -> list[Table]:
+    """Return `tables` tables of 3 x 3 under each of `blocks` headings.
+
+    Raises
+    ------
+    OutputFileError
+        If a heading or a row is missing; the line is named.
+    """
     found = []
     for block in range(blocks):
         lines.skip_to(heading(block), what)
@@ -112,9 +118,11 @@ def _blocks(lines: Lines, blocks: int, tables: int, what: str, heading: Callable
     return found
 
 
-def _atom_heading(block: int) -> str:
-    return rf"^ *atom +#? *{block + 1}\b"
+def atom_heading(block: int) -> str:
+    """Return the pattern of the heading of an atom, counted from 0."""
+    return rf"^ *atom +#? *{block + 1}(?!\d)"
 
 
-def _polarised_heading(block: int) -> str:
-    return rf"^ *atom +# +{block // 3 + 1} +pol\. +{block % 3 + 1}\b"
+def polarised_heading(block: int) -> str:
+    """Return the pattern of the heading of an atom and a direction of its displacement, both counted together."""
+    return rf"^ *atom +# +{block // 3 + 1} +pol\. +{block % 3 + 1}(?!\d)"

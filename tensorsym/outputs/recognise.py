@@ -5,7 +5,10 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, NamedTuple
 
 from tensorsym.errors import OutputFileError, UnknownNameError, nearest_names
+from tensorsym.outputs.abinit_anaddb import looks_like_anaddb, read_anaddb
+from tensorsym.outputs.espresso_dynamical import looks_like_dynamical_matrix, read_dynamical_matrix
 from tensorsym.outputs.espresso_phonon import looks_like_phonon_output, read_phonon_output
+from tensorsym.outputs.espresso_tensors import looks_like_espresso_tensors, read_espresso_tensors
 from tensorsym.outputs.vasp_outcar import looks_like_outcar, read_vasp_outcar
 from tensorsym.outputs.vasp_xml import looks_like_vasprun, read_vasprun_tensors
 
@@ -33,6 +36,9 @@ READERS = (
     Reader("vasp-outcar", "VASP OUTCAR", looks_like_outcar, read_vasp_outcar),
     Reader("vasp-xml", "vasprun.xml", looks_like_vasprun, read_vasprun_tensors),
     Reader("espresso-phonon", "ph.x output of Quantum ESPRESSO", looks_like_phonon_output, read_phonon_output),
+    Reader("espresso-dynamical", "its dynamical matrix", looks_like_dynamical_matrix, read_dynamical_matrix),
+    Reader("espresso-tensors", "its tensors.xml", looks_like_espresso_tensors, read_espresso_tensors),
+    Reader("abinit-anaddb", "anaddb output of ABINIT", looks_like_anaddb, read_anaddb),
 )
 """Readers of calculations, in the order in which they are tried."""
 

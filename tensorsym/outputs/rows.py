@@ -108,6 +108,11 @@ class Lines:
         msg = f"{what}: the next part is missing"
         raise OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=CUT_OFF)
 
+    def cut_off(self, what: str, found: int) -> OutputFileError:
+        """Return the error for a part that ends before it is whole."""
+        msg = f"{what}: cut off after {found} rows"
+        return OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=CUT_OFF)
+
     def _no_row(self, line: str, columns: int, what: str, found: Sequence[object]) -> OutputFileError:
         cause = _NO_NUMBER.search(line)
         msg = f"{what}: {line.strip()[:70]!r} is no row of {columns} numbers"

@@ -29,6 +29,7 @@ def with_totals(records: tuple[TensorRecord, ...]) -> tuple[TensorRecord, ...]:
 
 
 def _sum(electronic: TensorRecord, ionic: TensorRecord) -> TensorRecord:
+    lines = f", printed in lines {electronic.line} and {ionic.line}" if ionic.line else ""
     return replace(
         ionic,
         label="total, relaxed ion",
@@ -37,5 +38,5 @@ def _sum(electronic: TensorRecord, ionic: TensorRecord) -> TensorRecord:
         sigma=electronic.sigma,
         contribution="total",
         complete=True,
-        notes=(f"the sum of the parts printed in lines {electronic.line} and {ionic.line}",),
+        notes=(f"the sum of the electronic and the ionic part{lines}",),
     )
