@@ -17,6 +17,7 @@ if TYPE_CHECKING:
 
 @click.command("check")
 @click.argument("files", nargs=-1, required=True, metavar="FILE [TENSORFILE]")
+@click.option("--reader", metavar="NAME", help="Reader of the output, in place of the one its content asks for.")
 @click.option("--each", is_flag=True, help="Every FILE is an output of its own; one line for each.")
 @click.option("--property", "property_name", metavar="NAME", help="Property of a bare matrix; check only this one.")
 @click.option("--order", metavar="PAIRS", help="Order of index pairs of a bare matrix, such as 'xx yy zz xy yz zx'.")
@@ -35,6 +36,7 @@ if TYPE_CHECKING:
 @format_option("text", "json")
 def command(
     files: tuple[str, ...],
+    reader: str | None,
     each: bool,  # noqa: FBT001  click passes options by name
     property_name: str | None,
     order: str | None,
@@ -66,6 +68,7 @@ def command(
         "sigma": sigma,
         "tolerance": tolerance,
         "symprec": symprec,
+        "reader": reader,
     }
     if each:
         _refuse(target is not None or accept is not None, "--each does not go with --write or --accept")

@@ -95,6 +95,7 @@ def check_file(
     sigma: float | None = None,
     tolerance: float | None = None,
     symprec: float = 1e-3,
+    reader: str | None = None,
 ) -> CheckReport:
     """Return the verdicts on the tensors of a file.
 
@@ -118,6 +119,8 @@ def check_file(
         Relative residual to accept.
     symprec : float
         Distance in angstrom within which atoms count as equivalent.
+    reader : str, optional
+        Name of the reader of the output, in place of the one that the content asks for.
 
     Raises
     ------
@@ -125,13 +128,15 @@ def check_file(
         If a file cannot be read, or holds no structure or no tensor.
     """
     if tensor_path is None:
-        output = read_output(path, symprec=symprec)
+        output = read_output(path, symprec=symprec, reader=reader)
         crystal, records, form, notes = output.crystal, output.tensors, output.format, output.notes
         if crystal is None:
             raise OutputFileError("holds no structure", where=str(path), hint="give the structure file first")
     else:
         crystal = read(path, symprec=symprec)
-        records = read_tensors(tensor_path, property=property, order=order, unit=unit, atoms=len(crystal.species))
+        records = read_tensors(
+            tensor_path, property=property, order=order, unit=unit, atoms=len(crystal.species), reader=reader
+        )
         form, notes = "tensor file", ()
     chosen = _chosen(records, property, str(tensor_path or path))
     verdicts = tuple(_verdict(crystal, record, axes, sigma, tolerance) for record in chosen)
