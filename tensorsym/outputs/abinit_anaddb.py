@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, NamedTuple
 import numpy as np
 
 from tensorsym.catalog.properties import property_named
+from tensorsym.outputs.abinit_netcdf import STRESSED
 from tensorsym.outputs.record import OutputFile, TensorRecord
 from tensorsym.outputs.rows import Lines
 from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix
@@ -113,6 +114,7 @@ def _tensor(title: Title, line: str, lines: Lines) -> TensorRecord:
         digits=table.digits * title.scale,
         line=table.line,
         contribution="electronic" if clamped else "total",
+        notes=(STRESSED,) if "stress" in line and row.kind.rank == 4 else (),
     )
 
 

@@ -10,6 +10,7 @@ from tensorsym.errors import OutputFileError, TensorFileError
 from tensorsym.outputs.content import Content
 from tensorsym.outputs.json_document import read_json_document
 from tensorsym.outputs.numpy_file import looks_like_numpy_file, read_numpy_file
+from tensorsym.outputs.phonopy_born import looks_like_born, read_born
 from tensorsym.outputs.plain_text import read_bare_matrix
 from tensorsym.outputs.recognise import reader_for, refused
 from tensorsym.outputs.record import OutputFile
@@ -19,7 +20,11 @@ if TYPE_CHECKING:
     from collections.abc import Iterator
     from os import PathLike
 
+    from tensorsym.crystal.crystal import Crystal
     from tensorsym.outputs.record import TensorRecord
+
+BORN = "phonopy-born"
+"""Name of the reader of BORN files, which need a structure file beside them."""
 
 TENSOR_FILE = "tensor file"
 
@@ -77,6 +82,7 @@ def read_tensors(
     order: str | None = None,
     unit: str | None = None,
     atoms: int = 0,
+    crystal: Crystal | None = None,
     reader: str | None = None,
 ) -> tuple[TensorRecord, ...]:
     """Return the tensors of a tensor file in our JSON form, of a bare matrix, a ``.npy`` file, or of an output.
@@ -89,6 +95,8 @@ def read_tensors(
         What a bare matrix or array holds; files that say so themselves do not need them.
     atoms : int
         Number of atoms of the structure, for properties of a site.
+    crystal : Crystal, optional
+        The structure, for a BORN file, which holds the charges of some atoms only.
     reader : str, optional
         Name of the reader of an output.
 
@@ -98,9 +106,12 @@ def read_tensors(
         If the file cannot be read as any of them.
     """
     content = Content(path)
+    if reader == BORN or (reader is None and property is None and looks_like_born(content.head)):
+        return read_born(content, crystal)
     found = reader_for(content, reader)
     if found is not None:
         return found.read(content).tensors
+    atoms = atoms or (len(crystal.species) if crystal is not None else 0)
     if looks_like_numpy_file(content.start):
         return read_numpy_file(content, property=property, order=order, unit=unit, atoms=atoms)
     if content.is_binary:

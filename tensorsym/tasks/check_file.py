@@ -134,9 +134,7 @@ def check_file(
             raise OutputFileError("holds no structure", where=str(path), hint="give the structure file first")
     else:
         crystal = read(path, symprec=symprec)
-        records = read_tensors(
-            tensor_path, property=property, order=order, unit=unit, atoms=len(crystal.species), reader=reader
-        )
+        records = read_tensors(tensor_path, property=property, order=order, unit=unit, crystal=crystal, reader=reader)
         form, notes = "tensor file", ()
     chosen = _chosen(records, property, str(tensor_path or path))
     verdicts = tuple(_verdict(crystal, record, axes, sigma, tolerance) for record in chosen)
