@@ -47,6 +47,7 @@ class Home:
 
 
 HOMES = {
+    "h5py": Home(frozenset({"outputs"})),
     "ase": Home(frozenset({"crystal", "outputs"})),
     "click": Home(frozenset({"cli"}), frozenset({"cli"})),
     "flint": Home(frozenset({"exact"}), frozenset({"exact"})),
@@ -55,7 +56,7 @@ HOMES = {
     "pint": Home(frozenset({"catalog", "outputs", "tasks"})),
     "plotly": Home(frozenset({"report"})),
     "pymatgen": Home(frozenset({"crystal", "outputs"}), frozenset({"crystal", "outputs"})),
-    "scipy": Home(frozenset({"tasks"})),
+    "scipy": Home(frozenset({"outputs", "tasks"})),
     "spglib": Home(frozenset({"crystal", "outputs"}), frozenset({"crystal", "outputs"})),
     "sympy": Home(frozenset({"report", "tasks"})),
 }
