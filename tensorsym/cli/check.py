@@ -17,6 +17,13 @@ if TYPE_CHECKING:
 
 @click.command("check")
 @click.argument("files", nargs=-1, required=True, metavar="FILE [TENSORFILE]")
+@click.option(
+    "--fail-on",
+    type=click.Choice(["inconsistent", "unstable", "any"]),
+    default="inconsistent",
+    show_default=True,
+    help="What gives exit code 1: broken symmetry, a broken demand of physics, or either.",
+)
 @click.option("--reader", metavar="NAME", help="Reader of the output, in place of the one its content asks for.")
 @click.option("--each", is_flag=True, help="Every FILE is an output of its own; one line for each.")
 @click.option("--property", "property_name", metavar="NAME", help="Property of a bare matrix; check only this one.")
@@ -36,6 +43,7 @@ if TYPE_CHECKING:
 @format_option("text", "json")
 def command(
     files: tuple[str, ...],
+    fail_on: str,
     reader: str | None,
     each: bool,  # noqa: FBT001  click passes options by name
     property_name: str | None,
@@ -72,7 +80,7 @@ def command(
     }
     if each:
         _refuse(target is not None or accept is not None, "--each does not go with --write or --accept")
-        sys.exit(_check_each(files, options, style))
+        sys.exit(_check_each(files, options, style, fail_on))
     _refuse(len(files) > 2, "more than two files", "a structure and a tensor file, or --each")
     _refuse(accept is not None and not target, "--accept needs --write PATH")
     from tensorsym.tasks.check_file import check_file
@@ -83,7 +91,7 @@ def command(
 
         write_symmetrised(report, target, accept=accept, force=force)
     _show(report, style)
-    sys.exit(0 if report.verdict == "consistent" else 1)
+    sys.exit(int(report.fails(fail_on)))
 
 
 def _show(report: CheckReport, style: str) -> None:
@@ -97,7 +105,7 @@ def _show(report: CheckReport, style: str) -> None:
         click.echo(check_text(report))
 
 
-def _check_each(files: tuple[str, ...], options: dict[str, Any], style: str) -> int:
+def _check_each(files: tuple[str, ...], options: dict[str, Any], style: str, fail_on: str) -> int:
     """Check files one by one and return the highest exit code of them."""
     from tensorsym.report.check_json import checks_document
     from tensorsym.report.check_text import summary_line
@@ -110,7 +118,7 @@ def _check_each(files: tuple[str, ...], options: dict[str, Any], style: str) -> 
             click.echo(summary_line(checked))
     if style == "json":
         click.echo(json.dumps(checks_document(done), indent=1))
-    return max(checked.exit_code for checked in done)
+    return max(checked.exit_code(fail_on) for checked in done)
 
 
 def _refuse(wrong: bool, message: str, expected: str | None = None) -> None:  # noqa: FBT001  a condition

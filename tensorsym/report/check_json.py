@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from tensorsym.report.allowed_json import axes_document, group_document, structure_document
+from tensorsym.tasks.physics import statements_on
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -100,5 +101,9 @@ def verdict_document(verdict: TensorVerdict | SiteVerdict) -> dict[str, Any]:
             "characters": verdict.certificate.by_characters,
             "agree": verdict.certificate.agree,
         },
+        "physics": [
+            {"name": item.name, "holds": item.holds, "sentence": item.sentence, "value": item.value}
+            for item in statements_on(verdict)
+        ],
         "notes": list(verdict.notes),
     }

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from tensorsym.report.numbers import residual, short
 from tensorsym.report.tables import paragraph
+from tensorsym.tasks.physics import statements_on
 
 if TYPE_CHECKING:
     from tensorsym.tasks.check import Offence, TensorVerdict
@@ -104,6 +105,8 @@ def verdict_text(verdict: TensorVerdict | SiteVerdict) -> str:
     ]
     if verdict.verdict == "inconsistent":
         lines += [_offence(offence, verdict.unit) for offence in verdict.worst]
+    for statement in statements_on(verdict):
+        lines.append(paragraph("    physics:" if statement.holds else "    PHYSICS BROKEN:", [statement.sentence]))
     lines += [paragraph("    note:", [note]) for note in verdict.notes]
     return "\n".join(lines)
 

@@ -14,6 +14,7 @@ from tensorsym.groups.placement import elements_in_words
 from tensorsym.outputs.read import read_output, read_tensors
 from tensorsym.tasks.check import TensorVerdict, check_tensor, file_axes
 from tensorsym.tasks.check_sites import SiteVerdict, check_site_tensors
+from tensorsym.tasks.physics import statements_on
 from tensorsym.tensors.axes import Axes, axes_from_matrix
 
 if TYPE_CHECKING:
@@ -75,6 +76,12 @@ class CheckReport:
     def verdict(self) -> str:
         """``inconsistent`` if any tensor is, else ``consistent``."""
         return "consistent" if all(verdict.is_consistent for verdict in self.verdicts) else "inconsistent"
+
+    def fails(self, on: str) -> bool:
+        """Tell whether the file fails on ``inconsistent``, ``unstable`` (a demand of physics broken) or ``any``."""
+        broken = any(not item.holds for verdict in self.verdicts for item in statements_on(verdict))
+        wrong = self.verdict == "inconsistent"
+        return {"inconsistent": wrong, "unstable": broken, "any": wrong or broken}[on]
 
     @property
     def elements_in_words(self) -> str:

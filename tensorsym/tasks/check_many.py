@@ -23,12 +23,11 @@ class CheckedFile:
     error: TensorsymError | None
     """Why it could not be checked."""
 
-    @property
-    def exit_code(self) -> int:
-        """Exit code that the file alone would give."""
+    def exit_code(self, on: str = "inconsistent") -> int:
+        """Return the exit code that the file alone would give, failing on ``inconsistent``, ``unstable`` or ``any``."""
         if self.error is not None:
             return self.error.exit_code
-        return 0 if self.report is not None and self.report.verdict == "consistent" else 1
+        return int(self.report is None or self.report.fails(on))
 
 
 def check_each(paths: Iterable[str], **options: Any) -> Iterator[CheckedFile]:
