@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from tensorsym.report.allowed_json import axes_document, group_document, structure_document
-from tensorsym.tasks.physics import statements_on
+from tensorsym.tasks.demands import statements_on
 
 if TYPE_CHECKING:
     from collections.abc import Sequence

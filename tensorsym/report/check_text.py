@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 from tensorsym.report.numbers import residual, short
 from tensorsym.report.tables import paragraph
-from tensorsym.tasks.physics import statements_on
+from tensorsym.tasks.demands import statements_on
 
 if TYPE_CHECKING:
     from tensorsym.tasks.check import Offence, TensorVerdict

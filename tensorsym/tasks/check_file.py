@@ -14,7 +14,7 @@ from tensorsym.groups.placement import elements_in_words
 from tensorsym.outputs.read import read_output, read_tensors
 from tensorsym.tasks.check import TensorVerdict, check_tensor, file_axes
 from tensorsym.tasks.check_sites import SiteVerdict, check_site_tensors
-from tensorsym.tasks.physics import statements_on
+from tensorsym.tasks.demands import statements_on
 from tensorsym.tensors.axes import Axes, axes_from_matrix
 
 if TYPE_CHECKING:

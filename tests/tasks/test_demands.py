@@ -8,7 +8,7 @@ import pytest
 from tensorsym.crystal.read import read
 from tensorsym.tasks.check import check_tensor
 from tensorsym.tasks.check_file import check_file
-from tensorsym.tasks.physics import statements_on
+from tensorsym.tasks.demands import statements_on
 from tests.conftest import ROOT
 
 # Stiffness in GPa: quartz, Bechmann 1958; lithium niobate, Warner, Onoe and Coquin 1967; copper, handbooks (memory).
