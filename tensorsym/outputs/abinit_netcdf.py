@@ -101,9 +101,10 @@ def _crystal(variables: Mapping[str, NDArray[Any]], source: str) -> Crystal:
         raise OutputFileError(msg, where=source, expected="the netCDF file that anaddb of ABINIT writes")
     try:
         numbers = [round(float(number)) for number in np.ravel(variables["atomic_numbers"])]
-        species = [element_named(str(numbers[int(kind) - 1]), source) for kind in np.ravel(variables["atom_species"])]
+        atoms = [str(numbers[int(kind) - 1]) for kind in np.ravel(variables["atom_species"])]
     except (IndexError, KeyError, ValueError, OverflowError) as error:
         raise OutputFileError("its list of atoms is damaged", where=source) from error
+    species = [element_named(atom, source) for atom in atoms]
     parts = StructureParts(
         FORMAT,
         BOHR * np.asarray(variables["primitive_vectors"], dtype=float),

@@ -47,7 +47,7 @@ def read_castep(content: Content) -> OutputFile:
         modes.take(line)
         finished |= _CLOSED.search(line) is not None
         if re.match(r"^ +Born Effective Charges *$", line):
-            records.append(_charges(lines, geometry.labels))
+            records.append(_charges(lines, geometry.labels(lines.source)))
         elif "Optical Permittivity (f->infinity)" in line:
             records += _permittivities(lines)
         elif found := _RAMAN.search(line):

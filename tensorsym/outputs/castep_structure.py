@@ -47,14 +47,25 @@ class Geometry:
         InputError
             If lattice or atoms are missing, or make no crystal.
         """
-        if self._lattice is None or not self._species:
-            raise OutputFileError("holds no geometry before its tensors", where=source, hint=CUT_OFF)
-        return StructureParts(title, self._lattice, self._positions, self._species).crystal(source)
+        species = self._known_species(source)
+        if self._lattice is None:
+            raise OutputFileError("holds no lattice before its tensors", where=source, hint=CUT_OFF)
+        return StructureParts(title, self._lattice, self._positions, species).crystal(source)
 
-    @property
-    def labels(self) -> tuple[str, ...]:
-        """Number and species of each atom."""
-        return tuple(f"{number} {name}" for number, name in enumerate(self._species, 1))
+    def labels(self, source: str) -> tuple[str, ...]:
+        """Return number and species of each atom.
+
+        Raises
+        ------
+        OutputFileError
+            If no atoms have been met.
+        """
+        return tuple(f"{number} {name}" for number, name in enumerate(self._known_species(source), 1))
+
+    def _known_species(self, source: str) -> list[str]:
+        if not self._species:
+            raise OutputFileError("holds no atoms before its tensors", where=source, hint=CUT_OFF)
+        return self._species
 
     def _take_atoms(self, lines: Lines) -> None:
         self._species, self._positions = [], []

@@ -23,7 +23,8 @@ if TYPE_CHECKING:
     from tensorsym.crystal.crystal import Crystal
     from tensorsym.outputs.content import Content
 
-_NINE = re.compile(r"^(?:\s*[-+]?(?:\d+\.?\d*|\.\d+)(?:[EeDd][-+]?\d+)?){9}\s*$")
+_NUMBER = r"[-+]?(?:\d+\.?\d*|\.\d+)(?:[EeDd][-+]?\d{1,2})?"
+_NINE = re.compile(rf"^\s*(?:{_NUMBER}\s+){{8}}{_NUMBER}\s*$")
 UNDECLARED = "the file does not say which index is the field; symmetry cannot tell"
 FILLED = "the charges of equivalent atoms are those of the first one, carried by the space group"
 

@@ -83,7 +83,7 @@ class Lines:
             overflown = _NO_NUMBER.search(line)
             if not found and not words and overflown is None and self.number - begun <= most_skipped:
                 continue
-            if len(words) != columns or overflown is not None:
+            if len(words) != columns or overflown is not None or not _all_finite(words):
                 raise self._no_row(line, columns, what, found)
             found.append(words)
             if len(found) == rows:
@@ -117,9 +117,15 @@ class Lines:
         cause = _NO_NUMBER.search(line)
         msg = f"{what}: {line.strip()[:70]!r} is no row of {columns} numbers"
         hint = CUT_OFF if found else None
+        if cause is None and len(_NUMBER.findall(line)) == columns:
+            hint = "a number is too large"
         if cause is not None:
             hint = "the number did not fit its columns" if "*" in cause[0] else "the calculation has failed"
         return OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=hint)
+
+
+def _all_finite(words: Iterable[str]) -> bool:
+    return all(math.isfinite(float(word.replace("D", "E").replace("d", "e"))) for word in words)
 
 
 def numbers_in_words(rows: Sequence[Sequence[str]]) -> NDArray[np.float64]:
