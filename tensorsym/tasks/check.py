@@ -49,7 +49,7 @@ class Offence:
     rule: str
     """What symmetry says of it: ``0`` or an expression of independent components."""
     operation: str
-    """The operation that changes it most, in words."""
+    """The operation that changes it most, in words; or the exchange of indices that should leave it alone."""
     change: float
     """By how much that operation changes the value, in the tensor's unit."""
 
@@ -304,8 +304,7 @@ def _offences(verdict: TensorVerdict) -> tuple[Offence, ...]:
     order = np.argsort(-deviation, kind="stable")[:MOST_SHOWN]
     relations = matrix_relations(space, row.symbol, row.factors)
     names, free = [row.symbol + digits for digits in components.digits], set(space.free)
-    images, namer = _images(verdict), direction_namer(verdict.crystal)
-    turn = tuple(map(tuple, verdict.turn.tolist()))
+    images = np.concatenate([_images(verdict), _exchanged(verdict)])
     offences = []
     for number in order:
         if deviation[number] <= NEGLIGIBLE * max(verdict.size, verdict.threshold.absolute):
@@ -314,7 +313,7 @@ def _offences(verdict: TensorVerdict) -> tuple[Offence, ...]:
         changes = np.abs(images[:, word] - given[word]) * scale[number]
         strongest = int(np.argmax(changes))
         rule = name if number in free else combination_text(relations[name]) if name in relations else "0"
-        operation = element_in_words(verdict.group.operations[strongest], turn, namer)
+        operation = _cause_in_words(verdict, strongest)
         offences.append(
             Offence(
                 name,
@@ -339,3 +338,22 @@ def _images(verdict: TensorVerdict) -> NDArray[np.float64]:
         sign = -1.0 if kind.axial and operation.determinant < 0 else 1.0
         images.append(sign * turned(verdict.values, matrix).reshape(-1))
     return np.array(images)
+
+
+def _exchanged(verdict: TensorVerdict) -> NDArray[np.float64]:
+    """Return the tensor after every exchange of indices that its kind allows, shape (number, 3**rank)."""
+    import numpy as np
+
+    group = verdict.row.kind.index_group
+    return np.array([sign * verdict.values.transpose(order).reshape(-1) for order, sign in group])
+
+
+def _cause_in_words(verdict: TensorVerdict, number: int) -> str:
+    """Return the operation, or the exchange of indices, of a number in the list of both."""
+    operations = verdict.group.operations
+    if number < len(operations):
+        turn = tuple(map(tuple, verdict.turn.tolist()))
+        return element_in_words(operations[number], turn, direction_namer(verdict.crystal))
+    order, sign = verdict.row.kind.index_group[number - len(operations)]
+    letters = "ijklmnpqrs"[: len(order)]
+    return f"exchange of indices {letters} = {'-' if sign < 0 else ''}{''.join(letters[place] for place in order)}"

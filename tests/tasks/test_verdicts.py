@@ -221,3 +221,13 @@ def test_mended_tensor_reads_back(tmp_path):
         write_symmetrised(report, mended)
     with pytest.raises(UsageError, match="no explanation 99"):
         write_symmetrised(report, tmp_path / "other.json", accept=99)
+
+
+def test_broken_index_symmetry_is_told_as_such():
+    """A stiffness with c12 unlike c21 is charged to the exchange of indices, not to an operation of the crystal."""
+    crystal = read(ROOT / "structures" / "perovskite-pnma.cif")
+    matrix = np.diag([390.0, 370.0, 360.0, 90.0, 100.0, 80.0])
+    matrix[0, 1], matrix[1, 0] = 110.0, 60.0
+    worst = check_tensor(crystal, matrix, "elastic-stiffness").worst[0]
+
+    assert worst.operation == "exchange of indices ijkl = klij"
