@@ -16,7 +16,7 @@ from tensorsym.tensors.notation import VOIGT_ORDER
 if TYPE_CHECKING:
     from tensorsym.outputs.content import Content
 
-MOST_NUMBERS = 3**10 * 100
+MOST_NUMBERS = 1_000_000
 """More numbers than this are no tensor that can be checked."""
 
 _SPACING = re.compile(r"[\s,;\[\](){}]+")

@@ -60,7 +60,7 @@ def shaped(
     if values.size == size and grouped and values.shape != matrix:
         return values.reshape(one), False, False
     if values.size == matrix_size:
-        if values.ndim == 1 or values.shape == matrix:
+        if values.shape == matrix or max(values.shape, default=1) == values.size:
             return from_matrix(values.reshape(matrix), row.kind, row.factors, order), False, matrix != one
         if values.shape == matrix[::-1]:
             return from_matrix(values.T.copy(), row.kind, row.factors, order), False, matrix != one

@@ -280,8 +280,8 @@ def decimals_in(node: Any) -> Iterator[str]:
         for child in node:
             yield from decimals_in(child)
     elif isinstance(node, Decimal):
-        plain = -40 < int(node.as_tuple().exponent) < 40  # an exponent in the file is taken for one only if it is large
-        yield f"{node:f}" if plain else str(node)
+        places = -int(node.as_tuple().exponent)  # none, or very many, come from an exponent in the file only
+        yield f"{node:f}" if 0 < places < 40 else f"{node:E}"
 
 
 def tensor_document(record: TensorRecord, done: dict[str, Any] | None = None) -> dict[str, Any]:
