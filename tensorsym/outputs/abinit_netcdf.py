@@ -13,7 +13,7 @@ from tensorsym.crystal.parts import StructureParts
 from tensorsym.errors import OutputFileError
 from tensorsym.outputs.netcdf_variables import variables_of
 from tensorsym.outputs.record import OutputFile, TensorRecord
-from tensorsym.outputs.rows import CUT_OFF
+from tensorsym.outputs.rows import CUT_OFF, LARGEST
 from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix
 
 if TYPE_CHECKING:
@@ -117,9 +117,9 @@ def _crystal(variables: Mapping[str, NDArray[Any]], source: str) -> Crystal:
 def _record(name: str, meaning: Variable, variable: NDArray[Any], labels: tuple[str, ...], source: str) -> TensorRecord:
     row = property_named(meaning.property)
     array = np.array(variable, dtype=float)
-    if not np.isfinite(array).all():
-        place = ", ".join(str(index + 1) for index in np.argwhere(~np.isfinite(array))[0])
-        msg = f"the number at ({place}) is not finite"
+    if not (np.abs(array) < LARGEST).all():
+        place = ", ".join(str(index + 1) for index in np.argwhere(~(np.abs(array) < LARGEST))[0])
+        msg = f"the number at ({place}) is not finite, or too large"
         raise OutputFileError(msg, where=f"{source}, {name}")
     try:
         values, order = _tensors(name, array, len(labels))

@@ -11,6 +11,7 @@ import numpy as np
 from tensorsym.errors import ShapeError, TensorFileError, UsageError
 from tensorsym.outputs.plain_text import MOST_NUMBERS
 from tensorsym.outputs.record import TensorRecord
+from tensorsym.outputs.rows import LARGEST
 from tensorsym.outputs.shapes import shaped
 from tensorsym.outputs.units import property_in_unit
 from tensorsym.tensors.notation import VOIGT_ORDER
@@ -50,9 +51,9 @@ def read_numpy_file(
         )
     row, told_unit, notes = property_in_unit(property, unit)
     array = _array(content)
-    if not np.isfinite(array).all():
-        place = ", ".join(str(index + 1) for index in np.argwhere(~np.isfinite(array))[0])
-        msg = f"the number at ({place}) is not finite"
+    if not (np.abs(array) < LARGEST).all():
+        place = ", ".join(str(index + 1) for index in np.argwhere(~(np.abs(array) < LARGEST))[0])
+        msg = f"the number at ({place}) is not finite, or too large"
         raise TensorFileError(msg, where=content.source)
     tensor, per_site, in_pairs = shaped(array, row, order or VOIGT_ORDER, atoms, content.source)
     told_order = (order or VOIGT_ORDER) if in_pairs else ""

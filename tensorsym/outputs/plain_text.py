@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-import math
 import re
 from typing import TYPE_CHECKING
 
 from tensorsym.errors import ShapeError, TensorFileError, UsageError
 from tensorsym.outputs.record import TensorRecord
-from tensorsym.outputs.rows import typical_place
+from tensorsym.outputs.rows import is_usable, typical_place
 from tensorsym.outputs.shapes import rectangular, shaped
 from tensorsym.outputs.units import property_in_unit
 from tensorsym.tensors.notation import VOIGT_ORDER
@@ -108,7 +107,7 @@ def _finite(word: str, number: int, source: str) -> float:
         msg = f"{word[:40]!r} is no number"
         raise TensorFileError(msg, where=where)
     value = float(word.upper().replace("D", "E"))
-    if not math.isfinite(value):
-        msg = f"{word[:40]!r} is not finite"
+    if not is_usable(value):
+        msg = f"{word[:40]!r} is too large"
         raise TensorFileError(msg, where=where)
     return value

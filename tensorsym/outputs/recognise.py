@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, NamedTuple
 from tensorsym.errors import OutputFileError, UnknownNameError, nearest_names
 from tensorsym.outputs.abinit_anaddb import looks_like_anaddb, read_anaddb
 from tensorsym.outputs.abinit_netcdf import read_abinit_netcdf
+from tensorsym.outputs.abinit_output import looks_like_abinit, read_abinit
 from tensorsym.outputs.castep_efield import looks_like_efield, read_efield
 from tensorsym.outputs.castep_output import looks_like_castep, read_castep
 from tensorsym.outputs.espresso_dynamical import looks_like_dynamical_matrix, read_dynamical_matrix
@@ -52,6 +53,7 @@ READERS = (
     Reader("espresso-dynamical", "its dynamical matrix", _text(looks_like_dynamical_matrix), read_dynamical_matrix),
     Reader("espresso-tensors", "its tensors.xml", _text(looks_like_espresso_tensors), read_espresso_tensors),
     Reader("abinit-anaddb", "anaddb output of ABINIT", _text(looks_like_anaddb), read_anaddb),
+    Reader("abinit", "main output of ABINIT", _text(looks_like_abinit), read_abinit),
     Reader("abinit-netcdf", "netCDF output of ABINIT", _is_netcdf, read_abinit_netcdf),
     Reader("castep", "CASTEP output", _text(looks_like_castep), read_castep),
     Reader("castep-efield", "its .efield file", _text(looks_like_efield), read_efield),

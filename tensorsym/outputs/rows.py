@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import re
+from itertools import chain
 from statistics import median_high
 from typing import TYPE_CHECKING, NamedTuple
 
@@ -17,6 +18,9 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
 CUT_OFF = "the run may not have finished, or the file may be cut off"
+
+LARGEST = 1e100
+"""Numbers of this size and above are refused: their squares no longer fit."""
 
 _NUMBER = re.compile(r"[-+]?\d+\.\d*(?:[EeDd][-+]?\d+)?|[-+]?\.\d+(?:[EeDd][-+]?\d+)?")
 _NO_NUMBER = re.compile(r"\*{2,}|(?<![A-Za-z])(?:nan|[-+]?inf(?:inity)?)(?![A-Za-z])", re.IGNORECASE)
@@ -45,7 +49,7 @@ class Lines:
     """
 
     def __init__(self, lines: Iterable[str], source: str) -> None:
-        self._rest = iter(lines)
+        self._rest: Iterator[str] = iter(lines)
         self.source = source
         self.number = 0
 
@@ -58,6 +62,11 @@ class Lines:
         line = next(self._rest)
         self.number += 1
         return line
+
+    def put_back(self, line: str) -> None:
+        """Let the line taken last be the next one again."""
+        self._rest = chain((line,), self._rest)
+        self.number -= 1
 
     def table(self, rows: int, columns: int, what: str, most_skipped: int = 8) -> Table:
         """Return the next rows of numbers, with the rules and column heads before them skipped.
@@ -83,7 +92,7 @@ class Lines:
             overflown = _NO_NUMBER.search(line)
             if not found and not words and overflown is None and self.number - begun <= most_skipped:
                 continue
-            if len(words) != columns or overflown is not None or not _all_finite(words):
+            if len(words) != columns or overflown is not None or not all(map(is_usable, _values(words))):
                 raise self._no_row(line, columns, what, found)
             found.append(words)
             if len(found) == rows:
@@ -124,8 +133,13 @@ class Lines:
         return OutputFileError(msg, where=f"{self.source}, line {self.number}", hint=hint)
 
 
-def _all_finite(words: Iterable[str]) -> bool:
-    return all(math.isfinite(float(word.replace("D", "E").replace("d", "e"))) for word in words)
+def is_usable(number: float) -> bool:
+    """Tell a finite number that is not absurdly large.
+
+    >>> is_usable(-1e9), is_usable(1e300), is_usable(float("nan"))
+    (True, False, False)
+    """
+    return abs(number) < LARGEST
 
 
 def numbers_in_words(rows: Sequence[Sequence[str]]) -> NDArray[np.float64]:
@@ -134,7 +148,11 @@ def numbers_in_words(rows: Sequence[Sequence[str]]) -> NDArray[np.float64]:
     >>> numbers_in_words([["1.5", "-2.0D-1"]]).tolist()
     [[1.5, -0.2]]
     """
-    return np.array([[float(word.replace("D", "E").replace("d", "e")) for word in row] for row in rows])
+    return np.array([_values(row) for row in rows])
+
+
+def _values(words: Iterable[str]) -> list[float]:
+    return [float(word.replace("D", "E").replace("d", "e")) for word in words]
 
 
 def last_place(rows: Iterable[Iterable[str]]) -> float:

@@ -13,7 +13,7 @@ import numpy as np
 
 from tensorsym.errors import ShapeError, TensorFileError, TensorsymError, nearest_names
 from tensorsym.outputs.record import TensorRecord
-from tensorsym.outputs.rows import typical_place
+from tensorsym.outputs.rows import LARGEST, is_usable, typical_place
 from tensorsym.outputs.units import property_in_unit
 from tensorsym.tensors.axes import axes_from_matrix
 from tensorsym.tensors.notation import VOIGT_ORDER, from_matrix, matrix_shape, pair_order
@@ -244,8 +244,8 @@ def _numbers(node: Any, key: str, place: tuple[int, ...]) -> Any:
         number = float(node)
     except OverflowError:
         number = math.inf
-    if not math.isfinite(number):
-        msg = f"{key}{_at(place)}: {str(node)[:40]} is not finite"
+    if not is_usable(number):
+        msg = f"{key}{_at(place)}: {str(node)[:40]} is {'too large' if abs(number) >= LARGEST else 'not finite'}"
         raise TensorFileError(msg)
     return number
 

@@ -197,3 +197,70 @@ def test_cut_netcdf_is_refused(tmp_path, share):
 
     with pytest.raises(OutputFileError, match="damaged netCDF"):
         read_output(path)
+
+
+MAIN = SELENIUM.with_name("selenium.trimmed.abo")
+GPA, COULOMB_PER_AREA = 29421.015697, 57.2147656  # of one hartree/bohr^3, of one e/bohr^2 (CODATA 2018)
+
+
+def main_record(name, label):
+    """Return the record of a property whose label begins like this, from the main output."""
+    return next(r for r in read_output(MAIN).tensors if r.property == name and r.label.startswith(label))
+
+
+# Read by eye in the main output.
+@pytest.mark.parametrize(
+    ("name", "label", "place", "value"),
+    [
+        ("dielectric", "electronic", (2, 2), 16.9411436978),
+        ("born-charge", "from fields", (0, 2, 1), 1.0078700730),
+        ("born-charge", "from fields", (1, 1, 2), -0.1452912523),
+        ("born-charge", "from displacements", (0, 1, 2), 0.2905825889),
+        ("born-charge", "from displacements", (1, 2, 0), -0.8728410212),
+        ("elastic-stiffness", "clamped ion", (0, 0, 1, 2), 0.0006870323),
+        ("piezoelectric-stress", "clamped ion", (1, 0, 1), 0.0076283308),
+    ],
+)
+def test_main_output_is_placed_by_its_perturbations(name, label, place, value):
+    """A component lands where its two perturbations say."""
+    assert main_record(name, label).values[place] == value
+
+
+def test_main_output_agrees_with_anaddb():
+    """Main output and anaddb of one run give the same tensors, units taken into account."""
+    piezoelectric = main_record("piezoelectric-stress", "clamped ion").values * COULOMB_PER_AREA
+    charges = main_record("born-charge", "from fields").values
+    neutral = charges - charges.mean(axis=0)
+
+    assert np.abs(piezoelectric - record_of("piezoelectric-stress", "clamped ion").values).max() < 1e-6
+    assert main_record("elastic-stiffness", "clamped ion").values[0, 0, 0, 0] * GPA == pytest.approx(107.377413)
+    assert np.abs(neutral - record_of("born-charge", SEEN[-4][1]).values).max() < 1e-6
+
+
+@pytest.mark.parametrize("record", read_output(MAIN).tensors, ids=lambda r: f"{r.property} {r.label[:20]}")
+def test_main_output_obeys_class_32(record):
+    """An independent average leaves at most the 1e-6 of the shared index."""
+    assert residual(CRYSTAL, record) < 2e-6
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "says"),
+    [
+        ("   3    5   3    5        16.9411436978        -0.0000000000\n", "", "Dielectric tensor: cut off after 8"),
+        ("   1    6   1    6         0.0036496847", "   1    6   1    6         ************", "no row of 2 numbers"),
+        (
+            "   2    1   3    5         1.0078700730",
+            "   2    8   3    5         1.0078700730",
+            "Effective charges: cut",
+        ),
+    ],
+)
+def test_damaged_main_output_is_refused(tmp_path, old, new, says):
+    """Missing and misplaced components and asterisks are refused."""
+    text = MAIN.read_text(encoding="utf-8")
+    assert old in text
+    path = tmp_path / "se.abo"
+    path.write_text(text.replace(old, new, 1), encoding="utf-8")
+
+    with pytest.raises(OutputFileError, match=says):
+        read_output(path)

@@ -116,7 +116,7 @@ def test_unit_decides_the_form(tmp_path):
         ("1 0 0\n0 x1 0\n0 0 1\n", TensorFileError, "line 2: 'x1' is no number"),
         ("1 0 0\n0 nan 0\n0 0 1\n", TensorFileError, "line 2: 'nan' is not finite"),
         ("1 0 0\n0 -Infinity 0\n0 0 1\n", TensorFileError, "line 2: '-Infinity' is not finite"),
-        ("1 0 0\n0 1e999 0\n0 0 1\n", TensorFileError, "line 2: '1e999' is not finite"),
+        ("1 0 0\n0 1e999 0\n0 0 1\n", TensorFileError, "line 2: '1e999' is too large"),
         ("1 0 0\n0 1_0 0\n0 0 1\n", TensorFileError, "line 2: '1_0' is no number"),
         ("1 0 0\n0 1\n0 0 1\n", ShapeError, "line 2: 2 numbers in a row where the first row has 3"),
         ("1 0\n0 1\n", ShapeError, "numbers in 2 x 2 do not fit dielectric; expected 3 x 3"),

@@ -25,6 +25,7 @@ KNOWN = {
     "alas-wurtzite.dynG": "espresso-dynamical",
     "alas-wurtzite.tensors.xml": "espresso-tensors",
     "selenium.anaddb.out": "abinit-anaddb",
+    "selenium.trimmed.abo": "abinit",
     "BC2N-Pmm2-Raman.castep": "castep",
     "BN_R3m.test.efield": "castep-efield",
 }
