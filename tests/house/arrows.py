@@ -47,10 +47,10 @@ class Home:
 
 
 HOMES = {
-    "h5py": Home(frozenset({"outputs"})),
     "ase": Home(frozenset({"crystal", "outputs"})),
     "click": Home(frozenset({"cli"}), frozenset({"cli"})),
     "flint": Home(frozenset({"exact"}), frozenset({"exact"})),
+    "h5py": Home(frozenset({"outputs"})),
     "matplotlib": Home(frozenset({"report"})),
     "numpy": Home(ROOMS, frozenset({"crystal", "outputs", "tasks"})),
     "pint": Home(frozenset({"catalog", "outputs", "tasks"})),

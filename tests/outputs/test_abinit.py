@@ -1,6 +1,7 @@
 from __future__ import annotations
 
 import re
+import sys
 
 import numpy as np
 import pytest
@@ -263,4 +264,24 @@ def test_damaged_main_output_is_refused(tmp_path, old, new, says):
     path.write_text(text.replace(old, new, 1), encoding="utf-8")
 
     with pytest.raises(OutputFileError, match=says):
+        read_output(path)
+
+
+def test_netcdf_4_without_its_package(tmp_path, monkeypatch):
+    """A file in netCDF 4 is answered with the package to install when that is not there."""
+    monkeypatch.setitem(sys.modules, "h5py", None)
+    path = tmp_path / "anaddb.nc"
+    path.write_bytes(b"\x89HDF\r\n\x1a\n" + bytes(100))
+
+    with pytest.raises(OutputFileError, match="netCDF 4.*pip install h5py"):
+        read_output(path)
+
+
+def test_damaged_netcdf_4_is_refused(tmp_path):
+    """What only begins like netCDF 4 is refused."""
+    pytest.importorskip("h5py")
+    path = tmp_path / "anaddb.nc"
+    path.write_bytes(b"\x89HDF\r\n\x1a\n" + bytes(100))
+
+    with pytest.raises(OutputFileError, match="damaged netCDF"):
         read_output(path)
