@@ -273,7 +273,7 @@ def test_netcdf_4_without_its_package(tmp_path, monkeypatch):
     path = tmp_path / "anaddb.nc"
     path.write_bytes(b"\x89HDF\r\n\x1a\n" + bytes(100))
 
-    with pytest.raises(OutputFileError, match="netCDF 4.*pip install h5py"):
+    with pytest.raises(OutputFileError, match=r"netCDF 4.*pip install h5py"):
         read_output(path)
 
 
